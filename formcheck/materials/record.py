@@ -1,0 +1,301 @@
+"""What is known of one material. Every datum names its source; what is absent is unknown, not zero.
+
+A record is a YAML file (see DEVELOPERS.md). `sources` at its foot maps short keys to citations and
+each datum carries one of the keys. Nothing here decides anything: rooms above read it.
+"""
+
+from __future__ import annotations
+
+import re
+from typing import Annotated, Literal
+
+from pydantic import Field, model_validator
+
+from formcheck.quantity import Provenance, Quantity, SourceKind, known, unknown
+from formcheck.strict import Day, Strict, wrong
+
+MaterialKind = Literal[
+    "pigment", "dye", "indicator", "extender", "binder", "solvent", "water", "acid", "base", "salt",
+    "thickener", "surfactant", "preservative", "plasticiser", "drier", "metal_powder", "mordant",
+    "dispersion", "additive",
+]
+PhysicalForm = Literal["powder", "granules", "flake", "crystals", "paste", "liquid", "solution", "gas"]
+Charge = Literal["anionic", "cationic", "nonionic", "amphoteric"]
+Fraction = Annotated[float, Field(ge=0, le=1)]
+Positive = Annotated[float, Field(gt=0)]
+
+
+class Source(Strict):
+    """A citation. `verified: false` says that nobody here read it: it is from memory."""
+
+    cite: str
+    kind: SourceKind
+    edition: str = ""
+    read_on: Day | None = None
+    verified: bool = True
+
+
+class Number(Strict):
+    """A number with its source; `sd` is one standard deviation, `low`/`high` a published range."""
+
+    value: float
+    sd: Annotated[float, Field(ge=0)] | None = None
+    low: float | None = None
+    high: float | None = None
+    source: str
+    note: str = ""
+
+
+class Text(Strict):
+    value: str
+    source: str
+    note: str = ""
+
+
+class Part(Strict):
+    """One constituent of a material that is itself a mixture."""
+
+    material: str
+    mass_fraction: Fraction
+    low: Fraction | None = None
+    high: Fraction | None = None
+    source: str
+
+
+class Elements(Strict):
+    """Element content beyond what the formula says.
+
+    `only` lists every element the material is made of (traces aside), so that any other counts as
+    absent; `mg_kg` gives assays or upper bounds (`high`) for single elements, traces included.
+    """
+
+    only: list[str] | None = None
+    mg_kg: dict[str, Number] = {}
+    source: str = ""
+
+
+class Band(Strict):
+    """An absorption band: its maximum, its strength there, the two wavelengths at half its height."""
+
+    lambda_max_nm: Annotated[float, Field(gt=150, lt=2000)]
+    epsilon_l_mol_cm: Annotated[float, Field(gt=0, lt=1e7)]
+    half_height_nm: Annotated[list[float], Field(min_length=2, max_length=2)] | None = None
+    epsilon_relative_sd: Annotated[float, Field(ge=0, lt=5)] | None = None
+    lambda_sd_nm: Annotated[float, Field(ge=0)] | None = None
+    medium: str = ""
+    source: str
+
+    @model_validator(mode="after")
+    def _half_heights_enclose_the_maximum(self) -> Band:
+        if self.half_height_nm and not self.half_height_nm[0] < self.lambda_max_nm < self.half_height_nm[1]:
+            raise wrong(f"half heights {self.half_height_nm} about {self.lambda_max_nm} nm",
+                        "one half height below the maximum and one above")
+        return self
+
+
+class Box(Strict):
+    """A free-electron box. Chain: length; plate: two sides; ring: circumference. All in nm."""
+
+    shape: Literal["chain", "plate", "ring"]
+    n_pi_electrons: Annotated[int, Field(ge=2, le=200)]
+    length_nm: Positive | None = None
+    sides_nm: Annotated[list[Positive], Field(min_length=2, max_length=2)] | None = None
+    circumference_nm: Positive | None = None
+    bond_alternation_ev: Annotated[float, Field(ge=0, le=10)] = 0.0
+    count: Annotated[int, Field(ge=1, le=100)] = 1
+    source: str = "given"
+
+    @model_validator(mode="after")
+    def _has_the_size_of_its_shape(self) -> Box:
+        sizes = {"chain": self.length_nm, "plate": self.sides_nm, "ring": self.circumference_nm}
+        names = {"chain": "length_nm", "plate": "sides_nm", "ring": "circumference_nm"}
+        if [shape for shape, size in sizes.items() if size is not None] != [self.shape]:
+            raise wrong(f"a {self.shape} with other sizes", f"`{names[self.shape]}` alone for a {self.shape}")
+        if self.n_pi_electrons % 2:
+            raise wrong(f"{self.n_pi_electrons} pi electrons", "an even number of pi electrons")
+        return self
+
+
+class SpectrumFile(Strict):
+    """A measured spectrum beside the record: a CSV with wavelengths in nm in its first column."""
+
+    file: str
+    column: str | None = None
+    quantity: Literal["epsilon_l_mol_cm", "absorbance", "absorptivity_l_g_cm"]
+    concentration_g_l: Positive | None = None  # of the solution, for absorbance
+    path_length_cm: Positive | None = None
+    relative_sd: Annotated[float, Field(ge=0, lt=5)] | None = None
+    source: str
+
+
+class DyeForm(Strict):
+    """One form of a dye (acid, base, the only one): how it absorbs, or that it does not."""
+
+    name: str
+    bands: list[Band] = []
+    boxes: list[Box] = []
+    spectrum: SpectrumFile | None = None
+    colourless: Text | None = None
+
+
+class KubelkaMunkFile(Strict):
+    """K and S per um of dry film for pigment alone (volume fraction 1): CSV wavelength_nm, K, S."""
+
+    file: str
+    median_diameter_um: Positive | None = None
+    relative_sd: Annotated[float, Field(ge=0, lt=5)]
+    most_volume_fraction: Fraction | None = None  # beyond it crowding is outside the model
+    source: str
+
+
+class Optical(Strict):
+    """`forms` run from the most protonated to the least; there is one more form than pKa values."""
+
+    forms: list[DyeForm] = []
+    k_and_s: KubelkaMunkFile | None = None
+    fluoresces: Text | None = None
+
+
+class AcidBase(Strict):
+    """Proton exchange in water, by charge: enough to write the charge balance of a mixture.
+
+    `pka` runs from the most acidic on; `charge_fully_protonated` is the charge of the form holding
+    every proton; `counter_charge` that of the ions that come with it and take no part (Na+ of a
+    sodium salt: +1; Cl- of a hydrochloride: -1). A strong acid or base has no pka: HCl is
+    counter_charge -1, NaOH +1. `buffers_unknowably` marks latexes and the like.
+    """
+
+    pka: list[Number] = []
+    charge_fully_protonated: int = 0
+    counter_charge: int = 0
+    buffers_unknowably: bool = False
+    neutral: bool = False  # takes no part in acid-base exchange between pH 0 and 14
+    source: str = ""
+
+    @model_validator(mode="after")
+    def _pka_in_order(self) -> AcidBase:
+        values = [number.value for number in self.pka]
+        if values != sorted(values):
+            raise wrong(f"pKa values {values}", "pKa values in rising order")
+        return self
+
+
+class Window(Strict):
+    """Published pH range in which a material stays what it is, and what happens beyond each end."""
+
+    low: float | None = None
+    high: float | None = None
+    below: str = ""
+    above: str = ""
+    source: str
+
+
+class HazardEntry(Strict):
+    """One hazard class of the material, with its own limits where the law sets them."""
+
+    hazard_class: str
+    code: str  # H statement, such as H317
+    specific_limit_percent: float | None = None
+    m_factor: int | None = None
+    source: str
+
+
+class Hazards(Strict):
+    """`classified`, `not_classified` (someone looked and found nothing), or absent: unknown."""
+
+    status: Literal["classified", "not_classified"]
+    entries: list[HazardEntry] = []
+    source: str
+    note: str = ""
+
+
+class Material(Strict):
+    """One material of the shelf. Absent fields are unknown."""
+
+    id: Annotated[str, Field(pattern=r"^[a-z0-9][a-z0-9_]*$")]
+    names: Annotated[list[str], Field(min_length=1)]
+    kind: MaterialKind
+    physical_form: PhysicalForm | None = None
+    ci_generic_name: Text | None = None
+    ci_constitution_number: Text | None = None
+    cas: Text | None = None
+    formula: Text | None = None
+    molar_mass_g_mol: Number | None = None
+    density_g_cm3: Number | None = None
+    refractive_index: Number | None = None
+    oil_absorption_g_100g: Number | None = None
+    nonvolatile_fraction: Number | None = None
+    boiling_point_c: Number | None = None
+    flash_point_c: Number | None = None
+    composition: list[Part] = []
+    elements: Elements | None = None
+    groups: list[str] = []  # chemical families that rules speak of, such as carbonate, azo_colourant
+    charge: Text | None = None
+    optical: Optical | None = None
+    acid_base: AcidBase | None = None
+    ph_window: Window | None = None
+    solubility_water_g_l: Number | None = None
+    hazards: Hazards | None = None
+    note: str = ""
+    sources: dict[str, Source] = {}
+
+    @model_validator(mode="after")
+    def _every_source_is_cited(self) -> Material:
+        used = {text for text in _source_keys(self) if text}
+        missing = sorted(used - set(self.sources) - {"given"})
+        if missing:
+            raise wrong(f"the source {missing[0]!r}, which `sources` does not list", "a key of `sources`")
+        if self.charge and self.charge.value not in Charge.__args__:  # type: ignore[attr-defined]
+            raise wrong(f"the charge {self.charge.value!r}", f"one of {', '.join(Charge.__args__)}")  # type: ignore[attr-defined]
+        if sum(part.mass_fraction for part in self.composition) > 1 + 1e-9:
+            raise wrong("parts of the composition that sum to more than 1", "mass fractions of at most 1 in all")
+        forms = self.optical.forms if self.optical else []
+        n_pka = len(self.acid_base.pka) if self.acid_base else 0
+        if len(forms) > 1 and len(forms) != n_pka + 1:
+            raise wrong(f"{len(forms)} forms with {n_pka} pKa values", "one form more than pKa values")
+        return self
+
+    def quantity(self, field: str, unit: str) -> Quantity:
+        """A Number field as a Quantity, or unknown with the reason."""
+        number: Number | None = getattr(self, field)
+        if number is None:
+            return unknown(unit, f"no {field} on the record of {self.names[0]}")
+        return known(number.value, unit, sd=spread(number), provenance=self.provenance(number.source))
+
+    def provenance(self, key: str) -> Provenance:
+        if key not in self.sources:
+            return Provenance("user", "given by the user")
+        source = self.sources[key]
+        return Provenance(source.kind, source.cite, source.edition, source.verified)
+
+
+def spread(number: Number) -> float | None:
+    """One standard deviation: as given, or a quarter of a published range (about 95 % within it)."""
+    if number.sd is not None:
+        return number.sd
+    if number.low is not None and number.high is not None:
+        return (number.high - number.low) / 4
+    return None
+
+
+def _source_keys(model) -> set[str]:
+    """Every `source` that anything inside a record names."""
+    found: set[str] = set()
+    for name, value in model:
+        if name == "source" and isinstance(value, str):
+            found.add(value)
+            continue
+        for item in value if isinstance(value, list) else value.values() if isinstance(value, dict) else [value]:
+            if isinstance(item, Strict) and not isinstance(item, Source):
+                found |= _source_keys(item)
+    return found
+
+
+def name_key(name: str) -> str:
+    """A name as look-up compares it: case, spaces, hyphens, colons and underscores aside.
+
+    `PB 15:3`, `pb15_3` and `Pigment Blue 15:3` written `C.I. Pigment Blue 15:3` meet where a record
+    lists them.
+    """
+    key = re.sub(r"[\s_\-:.,'()]+", "", name.casefold())
+    return key.removeprefix("ci") if key.startswith(("cipigment", "ciacid", "cibasic", "cidirect")) else key
