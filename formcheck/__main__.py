@@ -1,0 +1,3 @@
+from formcheck.cli import main
+
+main()

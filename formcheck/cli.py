@@ -1,0 +1,174 @@
+"""The commands: read the words, call the rooms, show what came back, set the exit code. No science."""
+
+from __future__ import annotations
+
+import sys
+from datetime import date
+from pathlib import Path
+from typing import Annotated, Optional
+
+import typer
+
+from formcheck import __version__
+from formcheck.trouble import InputError, trouble
+
+app = typer.Typer(add_completion=False, no_args_is_help=True, pretty_exceptions_enable=False,
+                  rich_markup_mode=None, help="Check a recipe of ink, paint, stain or dye bath before weighing.")
+
+NOTHING_HELD, HELD, UNUSABLE = 0, 1, 2
+
+Files = Annotated[list[Path], typer.Argument(help="Recipe files: YAML, CSV or .xlsx.", show_default=False)]
+AsOf = Annotated[Optional[str], typer.Option("--as-of", metavar="DATE", help="Use the rules in force on this day.")]
+ShelfFolder = Annotated[Optional[Path], typer.Option("--shelf", help="A folder of your own material records.")]
+RuleFolders = Annotated[Optional[list[Path]], typer.Option("--rules", help="A folder of further rules.")]
+Json = Annotated[bool, typer.Option("--json", help="Print the whole record as JSON.")]
+Page = Annotated[Optional[Path], typer.Option("--page", metavar="FILE", help="Write one self-contained page.")]
+
+
+@app.command()
+def check(files: Files, as_of: AsOf = None, shelf: ShelfFolder = None, rules: RuleFolders = None,
+          json: Json = False, page: Page = None) -> None:
+    """Predict the shade, judge loadings and company, and say what could not be told."""
+    from formcheck.check.run import check_file
+
+    day = _day(as_of)
+    checks, troubles = [], []
+    for file in files:
+        try:
+            checks.append(check_file(file, as_of=day, shelf_folder=shelf, rule_folders=rules or []))
+        except InputError as error:
+            troubles.append(error)
+    if json:
+        _print_json(checks)
+    elif checks:
+        from formcheck.report.terminal import show_checks
+
+        show_checks(checks)
+    if page and checks:
+        from formcheck.files_out import write_text
+        from formcheck.report.page import pages_html
+
+        write_text(page, pages_html(checks))
+        _say(f"wrote {page}")
+    for error in troubles:
+        _complain(error)
+    if troubles:
+        raise typer.Exit(UNUSABLE)
+    raise typer.Exit(HELD if any(one.held for one in checks) else NOTHING_HELD)
+
+
+@app.command()
+def estimate(
+    box: Annotated[Optional[list[str]], typer.Option(
+        "--box", metavar="WORDS", help="A box: 'chain 8 1.2 nm', 'plate 14 0.9 x 0.5 nm', 'ring 6 0.84 nm' "
+        "(pi electrons, then size); again for each box of the molecule.")] = None,
+    file: Annotated[Optional[Path], typer.Argument(help="A file of boxes, by form.", show_default=False)] = None,
+    json: Json = False, page: Page = None,
+) -> None:
+    """Levels, bands, spectrum and swatch of a dye described as electron boxes."""
+    from formcheck.check.estimate import estimate_boxes
+
+    record = estimate_boxes(box or [], file)
+    if json:
+        print(record.model_dump_json(indent=1))
+    else:
+        from formcheck.report.estimate import show_estimate
+
+        show_estimate(record)
+    if page:
+        from formcheck.files_out import write_text
+        from formcheck.report.estimate import estimate_html
+
+        write_text(page, estimate_html(record))
+        _say(f"wrote {page}")
+
+
+@app.command()
+def shelf(
+    words: Annotated[Optional[list[str]], typer.Argument(help="Part of a name, a kind, a CAS or CI number.",
+                                                         show_default=False)] = None,
+    folder: ShelfFolder = None,
+) -> None:
+    """List the materials formcheck knows; one match is shown whole, each datum with its source."""
+    from formcheck.report.shelf import show_shelf
+
+    show_shelf(" ".join(words or []), folder)
+
+
+@app.command()
+def why(rule: Annotated[str, typer.Argument(help="The id of a rule.", show_default=False)],
+        rules: RuleFolders = None, as_of: AsOf = None) -> None:
+    """Show a rule whole: what it asks, of whom, since when, by which text, with its examples."""
+    from formcheck.check.rules import find_rule
+    from formcheck.report.rule import show_rule
+
+    show_rule(find_rule(rule, rules or []), as_of=_day(as_of))
+
+
+@app.command()
+def schema(check: Annotated[bool, typer.Option("--check", help="The schema of a Check instead.")] = False) -> None:
+    """Print the JSON Schema of a recipe file, for editors that complete and check it."""
+    import json as json_module
+
+    if check:
+        from formcheck.check.record import Check
+
+        described = Check.model_json_schema()
+    else:
+        from formcheck.recipe.schema import recipe_json_schema
+
+        described = recipe_json_schema()
+    print(json_module.dumps(described, indent=1, ensure_ascii=False))
+
+
+@app.command()
+def start(folder: Annotated[Path, typer.Argument(help="A folder that does not exist yet.")]) -> None:
+    """Lay out the demo workshop to begin from."""
+    from formcheck.check.start import lay_out_workshop
+
+    first = lay_out_workshop(folder)
+    _say(f"laid out {folder}; try: formcheck check {first}")
+
+
+@app.callback(invoke_without_command=True)
+def about(version: Annotated[bool, typer.Option("--version", help="Print the version.")] = False) -> None:
+    if version:
+        print(f"formcheck {__version__}")
+        raise typer.Exit()
+
+
+def main() -> None:
+    """The console entry: every mistake of the user ends as a message and exit code 2."""
+    try:
+        app()
+    except InputError as error:
+        _complain(error)
+        raise SystemExit(UNUSABLE) from None
+    except BrokenPipeError:  # `formcheck shelf | head`
+        sys.stderr.close()
+        raise SystemExit(NOTHING_HELD) from None
+
+
+def _day(text: str | None) -> date:
+    """The day to judge by; the clock is asked here and nowhere else."""
+    if text is None:
+        return date.today()
+    try:
+        return date.fromisoformat(text)
+    except ValueError:
+        raise trouble("--as-of", repr(text[:40]), "a date such as 2026-12-01") from None
+
+
+def _print_json(checks) -> None:
+    if len(checks) == 1:
+        print(checks[0].model_dump_json(indent=1))
+    else:
+        print("[" + ",\n".join(one.model_dump_json(indent=1) for one in checks) + "]")
+
+
+def _complain(error: InputError) -> None:
+    print(f"formcheck cannot use this input:\n{error}", file=sys.stderr)
+
+
+def _say(text: str) -> None:
+    print(text, file=sys.stderr)
