@@ -123,6 +123,7 @@ class Shade(Part):
     probability_within: float | None = None
     difference_words: str = ""  # darker, redder, ...
     lights: list[UnderLight] = []
+    region: list[Swatch] = []  # shades within the uncertainty, in an order the eye can follow
     contrast_ratio: float | None = None
     dominated_by: str = ""  # the source of uncertainty that dominates
     basis: list[ColourantBasis] = []
