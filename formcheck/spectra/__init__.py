@@ -1,0 +1,1 @@
+"""Spectra of colourants: the wavelength grid, measured files, absorption bands, box models, particles."""
