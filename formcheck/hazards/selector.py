@@ -1,0 +1,42 @@
+"""What a rule says of the ingredients it means: families, kinds, charges, numbers, hazard classes."""
+
+from __future__ import annotations
+
+from typing import Annotated
+
+from pydantic import Field, model_validator
+
+from formcheck.materials.record import Charge, MaterialKind, PhysicalForm
+from formcheck.strict import Strict, wrong
+
+Cas = Annotated[str, Field(pattern=r"^[1-9][0-9]{1,6}-[0-9]{2}-[0-9]$")]
+HazardCode = Annotated[str, Field(pattern=r"^(EUH|H)[0-9]{3}[A-Za-z]*$")]
+
+FACETS = ("group", "kind", "charge", "cas", "ci_name", "hazard_class", "hazard_code", "physical_form", "any_of")
+
+
+class Selector(Strict):
+    """Ingredients that agree with every facet named; within one facet, with any of its values.
+
+    `any_of` holds whole selectors of which one must agree. The last three fields do not select: they
+    say where an ingredient of which too little is known may be left aside (see hazard_rules/README.md).
+    """
+
+    group: list[str] = []
+    kind: list[MaterialKind] = []
+    charge: list[Charge] = []
+    cas: list[Cas] = []
+    ci_name: list[str] = []
+    hazard_class: list[str] = []
+    hazard_code: list[HazardCode] = []
+    physical_form: list[PhysicalForm] = []
+    any_of: list[Selector] = []
+    hides_in: list[MaterialKind] = []
+    shown_by_class: list[str] = []
+    shown_by_element: str | None = None
+
+    @model_validator(mode="after")
+    def _selects_something(self) -> Selector:
+        if not any(getattr(self, facet) for facet in FACETS):
+            raise wrong("a selector that names nothing", f"one of {', '.join(FACETS)}")
+        return self
