@@ -1,0 +1,1 @@
+"""What formcheck shows: terminal, page and plots. It shows records; it reckons no science."""
