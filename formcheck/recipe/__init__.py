@@ -1,0 +1,1 @@
+"""What the maker wrote: the recipe's form, its readers, its amounts as masses."""
