@@ -47,7 +47,8 @@ def built_in_folder() -> Path:
     """Where formcheck's own packs are installed."""
     spec = find_spec("hazard_rules")
     if spec is None or not spec.submodule_search_locations:
-        raise trouble("hazard_rules", "no installed package of this name", "formcheck installed with its rules")
+        raise trouble("hazard_rules", "no installed package of this name",
+                      "formcheck installed with its rules")
     return Path(next(iter(spec.submodule_search_locations)))
 
 
@@ -108,7 +109,10 @@ def _model_for(document: Document):
         return KINDS[kind]
     place = document.place(("kind",))
     found = "no `kind` here" if kind is None else f"the kind {shown(kind)}"
-    expected = suggestion(kind, list(KINDS)) if isinstance(kind, str) else f"`kind:` with one of {', '.join(KINDS)}"
+    if isinstance(kind, str):
+        expected = suggestion(kind, list(KINDS))
+    else:
+        expected = f"`kind:` with one of {', '.join(KINDS)}"
     raise trouble(document.file, found, expected, line=place.line, column=place.column, field="kind")
 
 

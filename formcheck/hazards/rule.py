@@ -5,28 +5,18 @@ One model for each kind of rule. `load_book` reads files into them; nothing here
 
 from __future__ import annotations
 
-from datetime import date
 from typing import Annotated, Literal
 
 from pydantic import Field, model_validator
 
+from formcheck.hazards.dated import DatedWindow, InForce, Limit, refuse_disorder
 from formcheck.hazards.example import NOT_TRIPPED, TRIPPED, Example
 from formcheck.hazards.selector import Selector
+from formcheck.hazards.summed import Comparison, Condition, NonEmpty, RuleQuantity
 from formcheck.quantity import SourceKind
 from formcheck.strict import Day, Strict, wrong
 
 Grade = Literal["stop", "hold", "care", "note", "unknown"]
-Basis = Literal["mixture", "dry_film", "as_used"]
-Comparison = Literal["more_than", "at_or_above"]
-VocKind = Literal["ready_to_use", "less_water"]
-
-# Unit of a limit -> (bases it fits, the unit in the fraction or g/L that columns carry).
-UNITS: dict[str, tuple[tuple[Basis, ...], float]] = {
-    "% w/w": (("mixture", "dry_film"), 1e-2),
-    "mg/kg": (("mixture", "dry_film"), 1e-6),
-    "g/L": (("as_used",), 1.0),
-}
-NonEmpty = Annotated[str, Field(min_length=1)]
 
 
 class Grading(Strict):
@@ -61,104 +51,6 @@ class RuleSource(Strict):
         return f"{self.instrument}, {self.clause}" if self.clause else self.instrument
 
 
-class Limit(Strict):
-    """A value with the days it holds: `from` on, up to and including `until`."""
-
-    starts: Annotated[Day, Field(alias="from")]
-    ends: Annotated[Day | None, Field(alias="until")] = None
-    value: Annotated[float, Field(ge=0)]
-    source: str
-
-
-class DatedWindow(Strict):
-    """A pH range with the day its text begins to count; either end may be open."""
-
-    starts: Annotated[Day | None, Field(alias="from")] = None
-    ends: Annotated[Day | None, Field(alias="until")] = None
-    low: Annotated[float, Field(ge=-2, le=16)] | None = None
-    high: Annotated[float, Field(ge=-2, le=16)] | None = None
-    source: str
-
-    @model_validator(mode="after")
-    def _has_an_end(self) -> DatedWindow:
-        if self.low is None and self.high is None:
-            raise wrong("a window without ends", "`low`, `high` or both")
-        if self.low is not None and self.high is not None and not self.low < self.high:
-            raise wrong(f"a window from {self.low} to {self.high}", "`low` below `high`")
-        return self
-
-
-class Term(Strict):
-    """One summand: an element, the share of some ingredients, or VOC; multiplied by `times`."""
-
-    element: Annotated[str, Field(pattern=r"^[A-Z][a-z]?$")] | None = None
-    share: Selector | None = None
-    voc: VocKind | None = None
-    times: float = 1.0
-
-    @model_validator(mode="after")
-    def _is_one_thing(self) -> Term:
-        if sum(x is not None for x in (self.element, self.share, self.voc)) != 1:
-            raise wrong("a term that is not one thing", "one of `element`, `share`, `voc`")
-        if not self.times:
-            raise wrong("`times: 0`", "a factor other than 0")
-        return self
-
-
-class SpecificLimits(Strict):
-    """Use the limits that the classification of a substance sets for itself, where its record has one.
-
-    `lowest` is the lowest such limit known of for these classes, in the unit of the rule: below it even
-    a substance whose record names none is within; between it and the rule's own limit the record has
-    to say (write the rule's own limit there when the classification sets none).
-    """
-
-    lowest: Annotated[float, Field(gt=0)]
-    source: str
-
-
-class Summed(Strict):
-    """What is summed, of what it is a share, and in which unit."""
-
-    of: Annotated[list[Term], Field(min_length=1)]
-    name: NonEmpty  # in a sentence: "lead", "VOC", "phthalates of the list"
-    basis: Basis = "mixture"
-    unit: str
-
-    @model_validator(mode="after")
-    def _unit_fits_basis(self) -> Summed:
-        if self.unit not in UNITS:
-            raise wrong(f"the unit {self.unit!r}", f"one of {', '.join(UNITS)}")
-        if self.basis not in UNITS[self.unit][0]:
-            raise wrong(f"the unit {self.unit!r} with the basis {self.basis}",
-                        f"one of the bases {', '.join(UNITS[self.unit][0])}")
-        if any(term.voc for term in self.of) and (self.basis != "as_used" or len(self.of) > 1):
-            raise wrong("VOC with other terms or another basis", "VOC alone, with the basis as_used")
-        return self
-
-
-class Condition(Summed):
-    """A further quantity that must be so for the rule to speak: zinc above 10 %, more water than solvent."""
-
-    comparison: Comparison
-    value: float
-
-
-class RuleQuantity(Summed):
-    """The quantity a limit speaks of."""
-
-    each: bool = False  # one substance at a time, instead of their sum
-    specific_limits: SpecificLimits | None = None
-
-    @model_validator(mode="after")
-    def _each_is_a_share(self) -> RuleQuantity:
-        if self.each and (len(self.of) > 1 or self.of[0].share is None):
-            raise wrong("`each` over something other than one `share`", "one term with `share`")
-        if self.specific_limits and not self.each:
-            raise wrong("`specific_limits` of a sum", "`each: true`")
-        return self
-
-
 class RuleBase(Strict):
     """What every kind of rule says."""
 
@@ -179,9 +71,11 @@ class RuleBase(Strict):
     def _every_source_is_cited_once_and_listed(self) -> RuleBase:
         cited, listed = set(self.source_keys()), set(self.sources)
         if cited - listed:
-            raise wrong(f"the source {min(cited - listed)!r}, which `sources` does not list", "a key of `sources`")
+            raise wrong(f"the source {min(cited - listed)!r}, which `sources` does not list",
+                        "a key of `sources`")
         if listed - cited:
-            raise wrong(f"the source {min(listed - cited)!r}, which nothing cites", "only sources that are cited")
+            raise wrong(f"the source {min(listed - cited)!r}, which nothing cites",
+                        "only sources that are cited")
         return self
 
     @model_validator(mode="after")
@@ -196,7 +90,8 @@ class RuleBase(Strict):
     @model_validator(mode="after")
     def _unknowns_of_law_hold(self) -> RuleBase:
         of_law = any(source.kind == "law" for source in self.sources.values())
-        if of_law and isinstance(self, (LimitOnSum, PhWindow)) and self.grade.cannot_tell not in ("hold", "stop"):
+        limits = isinstance(self, (LimitOnSum, PhWindow))
+        if of_law and limits and self.grade.cannot_tell not in ("hold", "stop"):
             raise wrong(f"cannot_tell graded {self.grade.cannot_tell!r} on a legal limit", "hold")
         return self
 
@@ -225,9 +120,12 @@ class LimitOnSum(RuleBase):
     @model_validator(mode="after")
     def _is_a_limit(self) -> LimitOnSum:
         _refuse_grades(self, needs="exceeds", other="applies")
-        _refuse_disorder(self.limit)
+        refuse_disorder(self.limit)
+        if self.comparison == "at_or_above" and any(one.value == 0 for one in self.limit):
+            raise wrong("a limit of 0 that counts as exceeded when reached", "`comparison: more_than`")
         if not self.confirmed:
-            raise wrong("a limit from memory (verified: false)", "a limit read in its source, or another kind of rule")
+            raise wrong("a limit from memory (verified: false)",
+                        "a limit read in its source, or another kind of rule")
         return self
 
 
@@ -252,10 +150,12 @@ class PhWindow(RuleBase):
     def _is_a_window(self) -> PhWindow:
         _refuse_grades(self, needs="exceeds", other="applies")
         if self.from_records == bool(self.window):
-            raise wrong("a window both in the rule and from the records, or neither", "`window` or `from_records: true`")
+            raise wrong("a window both in the rule and from the records, or neither",
+                        "`window` or `from_records: true`")
         for one in self.window:
             if (one.low is not None and not self.below) or (one.high is not None and not self.above):
-                raise wrong("an end of the window without its consequence", "`below` with `low`, `above` with `high`")
+                raise wrong("an end of the window without its consequence",
+                            "`below` with `low`, `above` with `high`")
         return self
 
 
@@ -265,14 +165,6 @@ class Company(Strict):
     ph_below: float | None = None
     ph_above: float | None = None
     in_water: bool = False
-
-
-class InForce(Strict):
-    """Days and source of a rule that has no limit to carry them."""
-
-    starts: Annotated[Day | None, Field(alias="from")] = None
-    ends: Annotated[Day | None, Field(alias="until")] = None
-    source: str
 
 
 class Party(Strict):
@@ -329,22 +221,3 @@ def _refuse_grades(rule: RuleBase, *, needs: str, other: str) -> None:
         raise wrong(f"no grade for {needs!r}", f"`grade: {{{needs}: ..., cannot_tell: ...}}`")
     if getattr(rule.grade, other) is not None:
         raise wrong(f"a grade for {other!r}", f"`grade: {{{needs}: ..., cannot_tell: ...}}`")
-
-
-def _refuse_disorder(limits: list[Limit]) -> None:
-    """Days must rise; each limit ends where the next begins, or on its own `until` before that."""
-    for one, following in zip(limits, limits[1:], strict=False):
-        if not one.starts < following.starts or (one.ends is not None and one.ends >= following.starts):
-            raise wrong(f"limits from {one.starts} and {following.starts} that overlap", "days in rising order")
-    for one in limits:
-        if one.ends is not None and one.ends < one.starts:
-            raise wrong(f"a limit until {one.ends} from {one.starts}", "`until` on or after `from`")
-
-
-def in_force(dated, as_of: date):
-    """The entry of a dated list that holds on a day, or None before the first and after the last `until`."""
-    held = [one for one in dated if one.starts is None or one.starts <= as_of]
-    if not held:
-        return None
-    last = held[-1]
-    return None if last.ends is not None and as_of > last.ends else last

@@ -12,7 +12,8 @@ from formcheck.strict import Strict, wrong
 Cas = Annotated[str, Field(pattern=r"^[1-9][0-9]{1,6}-[0-9]{2}-[0-9]$")]
 HazardCode = Annotated[str, Field(pattern=r"^(EUH|H)[0-9]{3}[A-Za-z]*$")]
 
-FACETS = ("group", "kind", "charge", "cas", "ci_name", "hazard_class", "hazard_code", "physical_form", "any_of")
+FACETS = ("group", "kind", "charge", "cas", "ci_name", "hazard_class", "hazard_code", "physical_form",
+          "any_of")
 
 
 class Selector(Strict):
@@ -40,3 +41,8 @@ class Selector(Strict):
         if not any(getattr(self, facet) for facet in FACETS):
             raise wrong("a selector that names nothing", f"one of {', '.join(FACETS)}")
         return self
+
+    @property
+    def asks_of_hazards(self) -> bool:
+        """Whether a hazard class or code decides."""
+        return bool(self.hazard_class or self.hazard_code) or any(one.asks_of_hazards for one in self.any_of)

@@ -74,8 +74,9 @@ def refuse_unknown_words(rule: Rule, words: Vocabulary, document: Document) -> N
     problems = []
     for path, word, known in _words_used(rule, words):
         if word not in known:
-            problems.append(Problem(document.place(path), f"{shown(word)}, which the vocabulary does not hold",
-                                    suggestion(word, list(known)), path_text(path)))
+            found = f"{shown(word)}, which the vocabulary does not hold"
+            right = suggestion(word, list(known))
+            problems.append(Problem(document.place(path), found, right, path_text(path)))
     if problems:
         raise InputError(problems)
 
