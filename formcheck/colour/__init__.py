@@ -1,0 +1,1 @@
+"""Solution and film optics, observers, colour differences, hiding. Recipes lead, wavelength is last."""
