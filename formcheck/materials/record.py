@@ -9,8 +9,9 @@ from __future__ import annotations
 import re
 from typing import Annotated, Literal
 
-from pydantic import Field, model_validator
+from pydantic import Field, field_validator, model_validator
 
+from formcheck.materials.formula import atomic_weights, parse_formula
 from formcheck.quantity import Provenance, Quantity, SourceKind, known, unknown
 from formcheck.strict import Day, Strict, wrong
 
@@ -72,6 +73,13 @@ class Elements(Strict):
     only: list[str] | None = None
     mg_kg: dict[str, Number] = {}
     source: str = ""
+
+    @model_validator(mode="after")
+    def _are_elements(self) -> Elements:
+        for symbol in (*(self.only or ()), *self.mg_kg):
+            if symbol not in atomic_weights():
+                raise wrong(f"the element {symbol[:20]!r}", "symbols of elements, such as Pb")
+        return self
 
 
 class Band(Strict):
@@ -239,6 +247,15 @@ class Material(Strict):
     note: str = ""
     sources: dict[str, Source] = {}
 
+    @field_validator("formula")
+    @classmethod
+    def _formula_can_be_read(cls, formula: Text | None) -> Text | None:
+        try:
+            parse_formula(formula.value if formula else "H2O")
+        except ValueError as error:
+            raise wrong(*str(error).rsplit("|", 1)) from None
+        return formula
+
     @model_validator(mode="after")
     def _every_source_is_cited(self) -> Material:
         used = {text for text in _source_keys(self) if text}
@@ -248,7 +265,8 @@ class Material(Strict):
         if self.charge and self.charge.value not in Charge.__args__:  # type: ignore[attr-defined]
             raise wrong(f"the charge {self.charge.value!r}", f"one of {', '.join(Charge.__args__)}")  # type: ignore[attr-defined]
         if sum(part.mass_fraction for part in self.composition) > 1 + 1e-9:
-            raise wrong("parts of the composition that sum to more than 1", "mass fractions of at most 1 in all")
+            raise wrong("parts of the composition that sum to more than 1",
+                        "mass fractions of at most 1 in all")
         forms = self.optical.forms if self.optical else []
         n_pka = len(self.acid_base.pka) if self.acid_base else 0
         if len(forms) > 1 and len(forms) != n_pka + 1:
@@ -285,10 +303,16 @@ def _source_keys(model) -> set[str]:
         if name == "source" and isinstance(value, str):
             found.add(value)
             continue
-        for item in value if isinstance(value, list) else value.values() if isinstance(value, dict) else [value]:
+        items = list(value.values()) if isinstance(value, dict) else value
+        for item in items if isinstance(items, list) else [items]:
             if isinstance(item, Strict) and not isinstance(item, Source):
                 found |= _source_keys(item)
     return found
+
+
+# The usages that Colour Index generic names begin with, as `C.I. Acid Blue 9` does.
+COLOUR_INDEX_USES = ("(pigment|acid|basic|cationic|direct|disperse|food|ingrain|mordant|natural|reactive"
+                     "|solubilisedvat|solvent|sulphur|sulfur|vat)")
 
 
 def name_key(name: str) -> str:
@@ -298,4 +322,4 @@ def name_key(name: str) -> str:
     lists them.
     """
     key = re.sub(r"[\s_\-:.,'()]+", "", name.casefold())
-    return key.removeprefix("ci") if key.startswith(("cipigment", "ciacid", "cibasic", "cidirect")) else key
+    return re.sub(r"^ci(?=" + COLOUR_INDEX_USES + ")", "", key)
