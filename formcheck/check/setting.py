@@ -1,0 +1,155 @@
+"""What a recipe says of how it is looked at: cell or film, ground, index, lights, wanted shade."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from formcheck.check.parts import Parts
+from formcheck.check.predict import Setting
+from formcheck.check.volumes import FilmState, wet_film_um
+from formcheck.colour.cielab import lab
+from formcheck.colour.grounds import ground, ground_names, ground_record
+from formcheck.colour.lights import light_name
+from formcheck.colour.tristimulus import white_point, xyz
+from formcheck.documents import FieldPath, path_text
+from formcheck.recipe.model import SpectrumReference
+from formcheck.recipe.read import WrittenRecipe
+from formcheck.spectra.files import read_spectrum_csv
+from formcheck.spectra.grid import WAVELENGTH_NM, resample
+from formcheck.trouble import InputError, Problem, shown, suggestion
+
+USUAL_INDEX = 1.5  # of organic binders (common practice)
+USUAL_LIGHT = "D65"
+SOLUTIONS = ("solution", "dye_bath")
+
+
+@dataclass(frozen=True)
+class Viewing:
+    """How the mixture is seen; `setting` is None with `reason` where the recipe does not say enough."""
+
+    setting: Setting | None
+    wet_thickness_um: float
+    thickness_sd_um: float
+    ground_name: str
+    geometry: str
+    lights: tuple[str, ...]  # the first is the one figures are given for
+    observer_deg: int
+    wanted_lab: tuple[float, float, float] | None
+    tolerance: float | None
+    notes: tuple[str, ...]
+    reason: str = ""
+
+
+def viewing_of(written: WrittenRecipe, parts: Parts, film: FilmState, r: int = 0) -> Viewing:
+    """Everything of the recipe that seeing hangs on; InputError for an unknown light or ground, a broken file."""
+    recipe = written.recipe
+    lights = _lights(written)
+    wanted = recipe.wanted
+    observer = wanted.observer or recipe.observer if wanted else recipe.observer
+    wanted_lab = _wanted_lab(written, lights[0], observer)
+    tolerance = wanted.tolerance if wanted else None
+
+    def seen(setting: Setting | None, *, wet=0.0, sd=0.0, ground_name="", geometry="", notes=(), reason=""):
+        return Viewing(setting, wet, sd, ground_name, geometry, lights, observer, wanted_lab, tolerance,
+                       tuple(notes), reason)
+
+    if recipe.what in SOLUTIONS and recipe.film is None:
+        path = recipe.path_length_cm
+        if path is None:
+            return seen(None, reason="no `path_length` given for the solution")
+        return seen(Setting(path_length_cm=path), ground_name="none: light passes through",
+                    geometry=f"cell of {path * 10:g} mm, the solvent as white")
+    if recipe.film is None:
+        return seen(None, reason="no `film` thickness given")
+    wet, why = wet_film_um(recipe.film, film, r)
+    if wet is None:
+        return seen(None, reason=f"the wet film is unknown: {why}")
+    if recipe.ground is None:
+        return seen(None, reason="no `ground` given for the film")
+    name, values, in_air, with_gloss = _ground(written)
+    index, index_note = _film_index(written, parts, film, r)
+    gloss = recipe.specular == "included"
+    in_air_gloss = gloss if with_gloss is None else with_gloss
+    sd = (recipe.film.sd_um or 0.0) * wet / recipe.film.thickness_um
+    setting = Setting(ground=values, ground_in_air=in_air, ground_specular_included=in_air_gloss,
+                      film_index=index, specular_included=gloss)
+    return seen(setting, wet=wet, sd=sd, ground_name=name, notes=[index_note] if index_note else [],
+                geometry=f"film of {wet:.3g} um wet over {name}, mirror reflection {recipe.specular}")
+
+
+def _lights(written: WrittenRecipe) -> tuple[str, ...]:
+    """Names as the table writes them; the light of the wanted shade comes first."""
+    recipe = written.recipe
+    named: list[tuple[str, FieldPath]] = []
+    if recipe.wanted:
+        named.append((recipe.wanted.light, ("wanted", "light")))
+    named += [(light, ("lights", n)) for n, light in enumerate(recipe.lights)]
+    found: list[str] = []
+    for light, path in named or [(USUAL_LIGHT, ())]:
+        try:
+            found.append(light_name(light))
+        except ValueError as error:
+            raise _wrong(written, path, shown(light), str(error).partition("; ")[2]) from None
+    return tuple(dict.fromkeys(found))
+
+
+def _wanted_lab(written: WrittenRecipe, light: str, observer: int) -> tuple[float, float, float] | None:
+    wanted = written.recipe.wanted
+    if wanted is None:
+        return None
+    if wanted.lab is not None:
+        return wanted.lab[0], wanted.lab[1], wanted.lab[2]
+    assert wanted.spectrum is not None
+    values = _measured(written, wanted.spectrum, wanted.column)
+    found = lab(xyz(values, light, observer), white_point(light, observer))
+    return float(found[0]), float(found[1]), float(found[2])
+
+
+def _ground(written: WrittenRecipe) -> tuple[str, np.ndarray, bool, bool | None]:
+    """(name, reflectance, measured in air, with the mirror reflection or None as the recipe says)."""
+    ground_said = written.recipe.ground
+    if isinstance(ground_said, SpectrumReference):
+        values = _measured(written, ground_said.spectrum, ground_said.column)
+        return f"the ground of {ground_said.spectrum}", values, True, None
+    name = str(ground_said)
+    if name not in ground_names():
+        raise _wrong(written, ("ground",), shown(name), suggestion(name, ground_names())
+                     + " or `{spectrum: FILE}` with the measured reflectance of your own")
+    record = ground_record(name)
+    return name, ground(name), record.measured_in_air, record.specular_included
+
+
+def _measured(written: WrittenRecipe, file: str, column: str | None) -> np.ndarray:
+    """A measured reflectance on the grid, as a fraction."""
+    path = written.folder / file
+    spectrum = read_spectrum_csv(path, column=column)
+    values, _ = resample(spectrum.wavelength_nm, spectrum.values)
+    if np.nanmax(values) > 1.5 or np.nanmin(values) < -0.01:
+        raise InputError(Problem(
+            written.document.place(("ground",)), f"reflectance from {values.min():.3g} to {values.max():.3g} in {file}",
+            "a reflectance as a fraction from 0 to 1 (divide percent by 100)"))
+    return np.clip(values, 0.0, 1.0)
+
+
+def _film_index(written: WrittenRecipe, parts: Parts, film: FilmState, r: int) -> tuple[float, str]:
+    """Index of the dry film: as given, or the volume mean over binders that have one, or the usual."""
+    if written.recipe.binder_index is not None:
+        return written.recipe.binder_index, ""
+    share, weighted = 0.0, 0.0
+    for c, material in enumerate(parts.materials):
+        volume = film.dry_fraction[r, c]
+        if material and material.kind == "binder" and material.refractive_index and np.isfinite(volume):
+            share += volume
+            weighted += volume * material.refractive_index.value
+    if share > 0:
+        return weighted / share, ""
+    return USUAL_INDEX, f"the refractive index of the dry film is taken as {USUAL_INDEX}, as no binder gives one"
+
+
+def _wrong(written: WrittenRecipe, path: FieldPath, found: str, expected: str) -> InputError:
+    return InputError(Problem(written.document.place(path), found, expected, path_text(path)))
+
+
+GRID = WAVELENGTH_NM

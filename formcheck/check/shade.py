@@ -1,0 +1,300 @@
+"""The shade of one recipe: prediction, uncertainty, region, difference from what is wanted."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+
+from formcheck.check.acid import AcidState, shares_at
+from formcheck.check.colourants import WIDE_NM, Colourants, colourants_of, missing_reasons
+from formcheck.check.parts import Parts
+from formcheck.check.predict import (
+    Optics,
+    Setting,
+    Variants,
+    pigment_volume_fraction,
+    predict_spectrum,
+)
+from formcheck.check.record import Shade, Spectrum, Swatch, UnderLight, Wanted
+from formcheck.check.setting import SOLUTIONS, Viewing
+from formcheck.check.volumes import FilmState
+from formcheck.colour.cielab import lab, lch
+from formcheck.colour.difference import delta_e_2000, difference_words
+from formcheck.colour.grounds import ground, ground_record
+from formcheck.colour.hiding import contrast_ratio
+from formcheck.colour.srgb import swatch
+from formcheck.colour.tristimulus import white_point, xyz
+from formcheck.colour.uncertainty import difference_spread, probability_within, propagate
+from formcheck.recipe.batch import Batch
+from formcheck.spectra.grid import WAVELENGTH_NM
+
+DRAWS = 200
+REGION_AT = (0.05, 0.25, 0.5, 0.75, 0.95)  # along the direction in which the shade is least sure
+WEIGHINGS = np.sqrt(2.0)  # a weighing is the difference of two readings
+LEAST_STRENGTH = 0.05
+
+
+@dataclass(frozen=True)
+class Inputs:
+    """The uncertain inputs of a prediction: values, spreads, least values, and what each is called."""
+
+    value: np.ndarray
+    sd: np.ndarray
+    lower: np.ndarray
+    label: list[str]
+
+
+@dataclass(frozen=True)
+class Model:
+    """A recipe made ready for prediction: rows of inputs in, spectra or Lab out."""
+
+    inputs: Inputs
+    spectra: Callable[[np.ndarray, Setting], np.ndarray]
+    variants: Callable[[np.ndarray], Variants]
+    optics: Optics
+
+
+def shade_of(batch: Batch, parts: Parts, *, film: FilmState, acid: AcidState, viewing: Viewing,
+             form_share: dict[int, np.ndarray | None], r: int = 0) -> tuple[Shade | None, str, Colourants]:
+    """The Shade, or None with the reason; and the optical data it stands on."""
+    fractions = parts.fractions(batch.mass_fraction)[r]
+    known = colourants_of(parts, ~(fractions == 0))
+    reason = _why_not(batch, film, viewing, known, form_share, fractions, r)
+    if reason:
+        return None, reason, known
+    assert viewing.setting is not None
+    model = _model(batch, parts, film, acid, viewing, known, r)
+    return _shade(model, viewing, known, form_share, parts, batch, r), "", known
+
+
+def _why_not(batch: Batch, film: FilmState, viewing: Viewing, known: Colourants, form_share, fractions, r: int) -> str:
+    reasons = missing_reasons(known, form_share)
+    if viewing.reason:
+        reasons.append(viewing.reason)
+    if np.isnan(fractions).any():
+        reasons.append("amounts are unknown: " + "; ".join(one.why for one in batch.reasons[r]))
+    elif np.isnan(film.density_g_ml.value[r]):
+        reasons.append(f"the density of the mixture is unknown: {film.density_g_ml.reasons[r]}")
+    if known.pigments and viewing.setting and viewing.setting.path_length_cm is not None:
+        reasons.append("a pigment makes the liquid turbid, which a clear cell does not hold")
+    return "; ".join(dict.fromkeys(reasons))
+
+
+def _model(batch: Batch, parts: Parts, film: FilmState, acid: AcidState, viewing: Viewing, known: Colourants,
+           r: int) -> Model:
+    optics = _optics(parts, known)
+    columns = [line.material for line in batch.lines[r]]
+    purity = np.array([1.0 if line.purity is None else line.purity for line in batch.lines[r]])
+    share_of_line = parts.share[columns] * purity[:, None]
+    density = float(film.density_g_ml.value[r])
+    inputs = _inputs(batch, viewing, known, acid, r)
+    n_lines, n_abs, n_pig = len(columns), len(known.absorbers), len(known.pigments)
+    at = np.cumsum([n_lines, n_abs, n_abs, n_abs, n_pig, n_pig, 1, 1])[:-1]
+
+    def variants(rows: np.ndarray) -> Variants:
+        mass, strength, shift, doubt, k, s, thickness, ph = np.split(rows, at, axis=1)
+        return Variants(
+            mass_fraction=mass @ share_of_line / mass.sum(axis=1, keepdims=True),
+            density_g_ml=np.full(len(rows), density), share=_absorber_shares(parts, known, ph[:, 0]),
+            wet_thickness_um=thickness[:, 0], strength=strength, shift_nm=shift, doubt=doubt, k_scale=k, s_scale=s)
+
+    def spectra(rows: np.ndarray, setting: Setting) -> np.ndarray:
+        return predict_spectrum(optics, setting, variants(rows))
+
+    return Model(inputs, spectra, variants, optics)
+
+
+def _optics(parts: Parts, known: Colourants) -> Optics:
+    wide, grid = len(WIDE_NM), len(WAVELENGTH_NM)
+    molar_masses = []
+    for one in known.absorbers:
+        material = parts.materials[one.constituent]
+        assert material is not None and material.molar_mass_g_mol is not None
+        molar_masses.append(material.molar_mass_g_mol.value)
+    return Optics(
+        wavelength_nm=WAVELENGTH_NM, wide_nm=WIDE_NM,
+        absorber_constituent=np.array([one.constituent for one in known.absorbers], dtype=int),
+        molar_mass_g_mol=np.array(molar_masses),
+        epsilon=np.array([one.epsilon for one in known.absorbers]).reshape(-1, wide),
+        epsilon_doubt=np.array([one.doubt for one in known.absorbers]).reshape(-1, wide),
+        pigment_constituent=np.array([one.constituent for one in known.pigments], dtype=int),
+        pigment_density_g_ml=np.array([one.density_g_ml for one in known.pigments]),
+        k=np.array([one.k for one in known.pigments]).reshape(-1, grid),
+        s=np.array([one.s for one in known.pigments]).reshape(-1, grid))
+
+
+def _inputs(batch: Batch, viewing: Viewing, known: Colourants, acid: AcidState, r: int) -> Inputs:
+    """Inputs in the order that `_model` takes them apart again."""
+    lines = batch.lines[r]
+    step = batch.recipes[r].recipe.balance_step_g
+    weighing = 0.0 if step is None else step / np.sqrt(12.0) * WEIGHINGS
+    mass = batch.line_mass_g[r, : len(lines)]
+    absorbers, pigments = known.absorbers, known.pigments
+    spectra_of = [f"spectrum of {one.name}" for one in absorbers]
+    optics_of = [f"K and S of {one.name}" for one in pigments]
+    ones_a, ones_p = np.ones(len(absorbers)), np.ones(len(pigments))
+    pigment_sd = [one.relative_sd for one in pigments]
+    ph_sd = 0.0 if acid.ph is None else acid.ph_sd
+    value = [mass, ones_a, 0 * ones_a, 0 * ones_a, ones_p, ones_p, [viewing.wet_thickness_um], [7.0 if acid.ph is None else acid.ph]]
+    sd = [np.where(mass > 0, weighing, 0.0), [one.strength_sd for one in absorbers],
+          [one.lambda_sd_nm for one in absorbers], [1.0 * one.doubt.any() for one in absorbers], pigment_sd, pigment_sd, [viewing.thickness_sd_um], [ph_sd]]
+    lower = [0 * mass, LEAST_STRENGTH * ones_a, np.full(2 * len(absorbers), -np.inf), LEAST_STRENGTH * ones_p,
+             LEAST_STRENGTH * ones_p, [0.0], [-np.inf]]
+    label = (["weighing"] * len(lines) + spectra_of * 3 + optics_of * 2 + ["film thickness", "pH"])
+    return Inputs(*(np.concatenate([np.asarray(part, float) for part in parts]) for parts in (value, sd, lower)), label)
+
+
+def _absorber_shares(parts: Parts, known: Colourants, ph: np.ndarray) -> np.ndarray:
+    """Share of each absorber's form at each pH, (N, F)."""
+    shares = np.ones((len(ph), len(known.absorbers)))
+    at: dict[int, np.ndarray] = {}
+    for f, one in enumerate(known.absorbers):
+        material = parts.materials[one.constituent]
+        assert material is not None
+        if one.constituent not in at:
+            at[one.constituent] = shares_at(material, ph)
+        shares[:, f] = at[one.constituent][:, one.form]
+    return shares
+
+
+def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts: Parts, batch: Batch, r: int) -> Shade:
+    assert viewing.setting is not None
+    setting, light, observer = viewing.setting, viewing.lights[0], viewing.observer_deg
+    x = model.inputs
+
+    def labs(rows: np.ndarray) -> np.ndarray:
+        return lab(xyz(model.spectra(rows, setting), light, observer), white_point(light, observer))
+
+    moved = propagate(labs, x.value, x.sd, lower=x.lower)
+    draws = _draws(x)
+    drawn_spectra = model.spectra(draws, setting)
+    drawn = lab(xyz(drawn_spectra, light, observer), white_point(light, observer))
+    estimated = any(one.basis == "box model" for one in known.basis)
+    covariance = np.cov(drawn.T) if estimated else moved.covariance
+    value = model.spectra(x.value[None, :], setting)[0]
+    low, high = np.percentile(drawn_spectra, [15.9, 84.1], axis=0)
+    wanted, de00, de00_sd, within, words = _against_wanted(viewing, moved.value, covariance)
+    return Shade(
+        light=light, observer_deg=observer, swatch=swatch_of(moved.value, light, observer),
+        xyz=_triple(xyz(value, light, observer)), lch=_triple(lch(moved.value)),
+        lab_sd=_triple(np.sqrt(np.diag(covariance))),
+        spectrum=Spectrum(
+            quantity="transmittance" if setting.path_length_cm is not None else "reflectance",
+            wavelength_nm=WAVELENGTH_NM.tolist(), value=value.tolist(),
+            low=np.minimum(low, value).tolist(), high=np.maximum(high, value).tolist()),
+        ground=viewing.ground_name, geometry=viewing.geometry, wanted=wanted, de00=de00, de00_sd=de00_sd,
+        probability_within=within, difference_words=words,
+        lights=_under_lights(value, viewing), region=_region(drawn, light, observer),
+        contrast_ratio=_contrast(model, viewing) if setting.ground is not None else None,
+        dominated_by=_dominant(moved.share_total, x.label),
+        basis=_basis_with_shares(known, form_share, parts), left_out=_left_out(model, viewing, known, parts, batch, r))
+
+
+def swatch_of(shade, light: str, observer: int) -> Swatch:
+    hexes, inside = swatch(np.asarray(shade, float), light, observer)
+    return Swatch(lab=_triple(shade), srgb_hex=str(hexes), in_gamut=bool(inside))
+
+
+def _triple(values) -> tuple[float, float, float]:
+    return float(values[0]), float(values[1]), float(values[2])
+
+
+def _draws(x: Inputs, seed: int = 20) -> np.ndarray:
+    """Rows that the inputs could be, (DRAWS, inputs); the same inputs always give the same rows."""
+    drawn = x.value + np.random.default_rng(seed).standard_normal((DRAWS, len(x.value))) * x.sd
+    return np.maximum(drawn, x.lower)
+
+
+def _against_wanted(viewing: Viewing, shade: np.ndarray, covariance: np.ndarray):
+    """(Wanted, DE00, its sd, P within tolerance, words); Nones where nothing is wanted."""
+    if viewing.wanted_lab is None:
+        return None, None, None, None, ""
+    light, observer, target = viewing.lights[0], viewing.observer_deg, np.array(viewing.wanted_lab)
+    within = None
+    if viewing.tolerance is not None:
+        within = float(probability_within(shade, covariance, target, viewing.tolerance))
+    wanted = Wanted(swatch=swatch_of(target, light, observer), light=light, observer_deg=observer,
+                    tolerance_de00=viewing.tolerance)
+    _, spread = difference_spread(shade, covariance, target)
+    return wanted, float(delta_e_2000(shade, target)), float(spread), within, difference_words(target, shade)
+
+
+def _under_lights(spectrum: np.ndarray, viewing: Viewing) -> list[UnderLight]:
+    observer = viewing.observer_deg
+    labs = [lab(xyz(spectrum, light, observer), white_point(light, observer)) for light in viewing.lights]
+    return [UnderLight(light=light, swatch=swatch_of(one, light, observer),
+                       de00_from_first=float(delta_e_2000(labs[0], one)))
+            for light, one in zip(viewing.lights, labs, strict=True)]
+
+
+def _region(drawn: np.ndarray, light: str, observer: int) -> list[Swatch]:
+    """Shades along the direction in which the drawn ones spread most, from one end to the other."""
+    _, axes = np.linalg.eigh(np.cov(drawn.T))
+    order = np.argsort((drawn - drawn.mean(axis=0)) @ axes[:, -1])
+    return [swatch_of(drawn[order[int(q * (len(order) - 1))]], light, observer) for q in REGION_AT]
+
+
+def _contrast(model: Model, viewing: Viewing) -> float:
+    """Y over black to Y over white at this film, over the charts of the standards, D65."""
+    assert viewing.setting is not None
+    rows = model.inputs.value[None, :]
+    y = []
+    for name in ("chart_black", "chart_white"):
+        record = ground_record(name)
+        setting = Setting(ground=ground(name), ground_in_air=record.measured_in_air,
+                          ground_specular_included=record.specular_included,
+                          film_index=viewing.setting.film_index, specular_included=viewing.setting.specular_included)
+        y.append(xyz(model.spectra(rows, setting), "D65", 10)[0, 1])
+    return float(contrast_ratio(y_black=y[0], y_white=y[1]))
+
+
+def _dominant(share: np.ndarray, label: list[str]) -> str:
+    """The source with the largest part of the variance of L*, a*, b* together."""
+    variance: dict[str, float] = {}
+    for name, part in zip(label, share, strict=True):
+        variance[name] = variance.get(name, 0.0) + float(part)
+    name = max(variance, key=lambda one: variance[one])
+    return f"{name} ({variance[name]:.0%} of the variance)" if variance[name] > 0 else ""
+
+
+def _basis_with_shares(known: Colourants, form_share, parts: Parts):
+    basis = []
+    for one in known.basis:
+        share = None
+        for c, shares in form_share.items():
+            material = parts.materials[c]
+            if one.form and shares is not None and material and material.names[0] == one.material and material.optical:
+                forms = [form.name for form in material.optical.forms]
+                share = float(shares[forms.index(one.form)])
+        basis.append(one.model_copy(update={"share": share}))
+    return basis
+
+
+def _left_out(model: Model, viewing: Viewing, known: Colourants, parts: Parts, batch: Batch, r: int) -> list[str]:
+    said = list(viewing.notes)
+    if batch.recipes[r].recipe.balance_step_g is None:
+        said.append("the uncertainty of weighing, as the recipe gives no `weighing`")
+    if viewing.setting and viewing.setting.ground is not None and viewing.thickness_sd_um == 0:
+        said.append("the unevenness of the film, as the recipe gives no `sd` with it")
+    said += [f"the fluorescence of {name}" for name in known.fluorescent]
+    if known.absorbers and batch.recipes[r].recipe.what not in SOLUTIONS:
+        said.append("what drying does to the dyes: their spectra are those of solutions")
+    said += _crowded(model, known)
+    fraction = parts.fractions(batch.mass_fraction)[r]
+    for c, material in enumerate(parts.materials):
+        if material is None and fraction[c] > 0:
+            said.append(f"the colour of the {parts.names[c]} ({fraction[c]:.1%}), taken as clear")
+        elif material is not None and material.kind == "extender" and fraction[c] > 0 and \
+                not (material.optical and material.optical.k_and_s):
+            said.append(f"the scattering of {parts.names[c]}, which is small in a film without pores")
+    return said
+
+
+def _crowded(model: Model, known: Colourants) -> list[str]:
+    """Pigments beyond the volume fraction up to which their K and S hold."""
+    volume = pigment_volume_fraction(model.optics, model.variants(model.inputs.value[None, :]))[0]
+    return [f"the crowding of {one.name}: {v:.0%} by volume of the wet film, K and S hold up to "
+            f"{one.most_volume_fraction:.0%}" for one, v in zip(known.pigments, volume, strict=True)
+            if one.most_volume_fraction is not None and v > one.most_volume_fraction]
