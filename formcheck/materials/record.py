@@ -71,7 +71,7 @@ class Elements(Strict):
     """
 
     only: list[str] | None = None
-    mg_kg: dict[str, Number] = {}
+    mg_kg: dict[str, Number] = Field(default_factory=dict)
     source: str = ""
 
     @model_validator(mode="after")
@@ -140,8 +140,8 @@ class DyeForm(Strict):
     """One form of a dye (acid, base, the only one): how it absorbs, or that it does not."""
 
     name: str
-    bands: list[Band] = []
-    boxes: list[Box] = []
+    bands: list[Band] = Field(default_factory=list)
+    boxes: list[Box] = Field(default_factory=list)
     spectrum: SpectrumFile | None = None
     colourless: Text | None = None
 
@@ -159,7 +159,7 @@ class KubelkaMunkFile(Strict):
 class Optical(Strict):
     """`forms` run from the most protonated to the least; there is one more form than pKa values."""
 
-    forms: list[DyeForm] = []
+    forms: list[DyeForm] = Field(default_factory=list)
     k_and_s: KubelkaMunkFile | None = None
     fluoresces: Text | None = None
 
@@ -173,7 +173,7 @@ class AcidBase(Strict):
     counter_charge -1, NaOH +1. `buffers_unknowably` marks latexes and the like.
     """
 
-    pka: list[Number] = []
+    pka: list[Number] = Field(default_factory=list)
     charge_fully_protonated: int = 0
     counter_charge: int = 0
     buffers_unknowably: bool = False
@@ -212,7 +212,7 @@ class Hazards(Strict):
     """`classified`, `not_classified` (someone looked and found nothing), or absent: unknown."""
 
     status: Literal["classified", "not_classified"]
-    entries: list[HazardEntry] = []
+    entries: list[HazardEntry] = Field(default_factory=list)
     source: str
     note: str = ""
 
@@ -235,9 +235,9 @@ class Material(Strict):
     nonvolatile_fraction: Number | None = None
     boiling_point_c: Number | None = None
     flash_point_c: Number | None = None
-    composition: list[Part] = []
+    composition: list[Part] = Field(default_factory=list)
     elements: Elements | None = None
-    groups: list[str] = []  # chemical families that rules speak of, such as carbonate, azo_colourant
+    groups: list[str] = Field(default_factory=list)  # families that rules speak of, such as carbonate
     charge: Text | None = None
     optical: Optical | None = None
     acid_base: AcidBase | None = None
@@ -245,7 +245,7 @@ class Material(Strict):
     solubility_water_g_l: Number | None = None
     hazards: Hazards | None = None
     note: str = ""
-    sources: dict[str, Source] = {}
+    sources: dict[str, Source] = Field(default_factory=dict)
 
     @field_validator("formula")
     @classmethod

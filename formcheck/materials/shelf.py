@@ -153,7 +153,7 @@ def closest_names(shelf: Shelf, name: str, *, most: int = 3) -> list[str]:
     """Names on the shelf that look like `name`, at most one to a material, the closest first."""
     spelled: dict[str, tuple[str, str]] = {}
     for listed in listing(shelf):
-        for word in (listed.id, *listed.names, listed.ci_generic_name):
+        for word in (*listed.names, listed.ci_generic_name, listed.id):
             spelled.setdefault(name_key(word), (listed.id, word))
     close = get_close_matches(name_key(name), [key for key in spelled if key], n=12, cutoff=0.65)
     kept: dict[str, str] = {}
