@@ -52,9 +52,10 @@ def quantity_columns(summed: Summed, materials: Materials, matcher: Matcher, *, 
     """The linear forms of a quantity over these materials; `limit` as the rule writes it, for `each`."""
     if summed.of[0].voc:
         return Quantity(summed, ())
-    if isinstance(summed, RuleQuantity) and summed.each:
+    if isinstance(summed, RuleQuantity) and (summed.each or summed.specific_limits):
         assert summed.of[0].share is not None
         rows = _row_of_each(summed, summed.of[0].share, materials, matcher, limit=limit)
+        rows = rows if summed.each else (_weighed_sum(rows, summed),)
     else:
         rows = (_row_of_sum(summed, materials, matcher),)
     return Quantity(summed, rows, _missing(summed, materials, matcher))
@@ -70,11 +71,20 @@ def _row_of_sum(summed: Summed, materials: Materials, matcher: Matcher) -> Row:
     return Row(summed.name, low, high)
 
 
+def _weighed_sum(rows: tuple[Row, ...], quantity: RuleQuantity) -> Row:
+    """The sum of substances, each counting by the limit of the rule over its own."""
+    low = np.sum([row.low / row.surely for row in rows], axis=0)
+    high = np.sum([row.high / row.at_most for row in rows], axis=0)
+    return Row(quantity.name, low, high)
+
+
 def _content(term: Term, material: Material, matcher: Matcher) -> tuple[float, float]:
     if term.element:
-        return matcher.knowledge.element_bounds(material, term.element)[:2]
-    assert term.share is not None
-    return matcher.content(term.share, material)
+        low, high = matcher.knowledge.element_bounds(material, term.element)[:2]
+    else:
+        assert term.share is not None
+        low, high = matcher.content(term.share, material)
+    return (0.0, high) if term.only_the else (low, high)
 
 
 def _row_of_each(quantity: RuleQuantity, selector: Selector, materials: Materials, matcher: Matcher, *,
@@ -138,7 +148,9 @@ def _missing(summed: Summed, materials: Materials, matcher: Matcher) -> tuple[Mi
     for i, material in enumerate(materials):
         for term in summed.of:
             low, high = _content(term, material, matcher)
-            if low < high and term.element:
+            if low < high and term.only_the:
+                found.append(Missing(i, f"how much is {term.only_the}, by test,"))
+            elif low < high and term.element:
                 found.append(Missing(i, f"the {term.element} content"))
             elif low < high and term.share:
                 found += [Missing(i, datum)

@@ -81,7 +81,7 @@ class RuleBase(Strict):
     @model_validator(mode="after")
     def _examples_show_both_answers(self) -> RuleBase:
         expected = {example.expect for example in self.examples}
-        if not expected & TRIPPED:
+        if not expected & self.tripped_as():
             raise wrong("no example that trips the rule", "one that expects exceeds or applies")
         if not expected & NOT_TRIPPED:
             raise wrong("no example that does not trip the rule", "one that expects within or no_flag")
@@ -90,13 +90,17 @@ class RuleBase(Strict):
     @model_validator(mode="after")
     def _unknowns_of_law_hold(self) -> RuleBase:
         of_law = any(source.kind == "law" for source in self.sources.values())
-        limits = isinstance(self, (LimitOnSum, PhWindow))
-        if of_law and limits and self.grade.cannot_tell not in ("hold", "stop"):
+        halts = self.grade.exceeds in ("stop", "hold")
+        if of_law and halts and self.grade.cannot_tell not in ("hold", "stop"):
             raise wrong(f"cannot_tell graded {self.grade.cannot_tell!r} on a legal limit", "hold")
         return self
 
     def source_keys(self) -> list[str]:
         raise NotImplementedError
+
+    def tripped_as(self) -> set[str]:
+        """The answers that show the rule tripped."""
+        return TRIPPED
 
     @property
     def confirmed(self) -> bool:
@@ -112,6 +116,10 @@ class LimitOnSum(RuleBase):
     comparison: Comparison
     limit: Annotated[list[Limit], Field(min_length=1)]
     only_if: list[Condition] = []
+
+    def tripped_as(self) -> set[str]:
+        """Where only a part counts that a test must tell, the content alone never surely exceeds."""
+        return TRIPPED if any(not term.only_the for term in self.quantity.of) else {"cannot_tell"}
 
     def source_keys(self) -> list[str]:
         specific = self.quantity.specific_limits
@@ -141,6 +149,7 @@ class PhWindow(RuleBase):
     window: list[DatedWindow] = []
     below: str = ""  # what happens below the low end, in a sentence: "it loses its colour"
     above: str = ""
+    whose: str = ""  # who stands it, when it is not the ingredient: "skin and eyes"
     source: str | None = None  # of a rule that takes the windows of the records
 
     def source_keys(self) -> list[str]:

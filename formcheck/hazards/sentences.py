@@ -49,7 +49,7 @@ def limit_sentence(answer: str, *, name: str, low: float, high: float, limit: fl
 def window_sentence(answer: str, *, name: str, ph: tuple[float, float], window: tuple[float, float],
                     below: str, above: str) -> str:
     low, high = window
-    stands = f"{name} stands {_span(low, high)}"
+    stands = f"{name}: stands {_span(low, high)}"
     if ph == (-inf, inf):
         told = "the pH is unknown"
     elif abs(ph[1] - ph[0]) < 0.005:

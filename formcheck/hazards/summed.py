@@ -23,12 +23,17 @@ UNITS: dict[str, tuple[tuple[Basis, ...], float]] = {
 
 
 class Term(Strict):
-    """One summand: an element, the share of some ingredients, or VOC; multiplied by `times`."""
+    """One summand: an element, the share of some ingredients, or VOC; multiplied by `times`.
+
+    `only_the` says that a part counts of which nobody but a test can tell how much it is: "chromium(VI)",
+    "part that migrates". The content is then its upper bound, and 0 its lower.
+    """
 
     element: Annotated[str, Field(pattern=r"^[A-Z][a-z]?$")] | None = None
     share: Selector | None = None
     voc: VocKind | None = None
     times: float = 1.0
+    only_the: str = ""
 
     @model_validator(mode="after")
     def _is_one_thing(self) -> Term:
@@ -41,6 +46,8 @@ class Term(Strict):
 
 class SpecificLimits(Strict):
     """Use the limits that the classification of a substance sets for itself, where its record has one.
+
+    With `each`, every substance has its own limit; in a sum, each counts by (limit of the rule) / (its own).
 
     `lowest` is the lowest such limit known of for these classes, in the unit of the rule: below it even
     a substance whose record names none is within; between it and the rule's own limit the record has
@@ -91,6 +98,6 @@ class RuleQuantity(Summed):
     def _each_is_a_share(self) -> RuleQuantity:
         if self.each and (self.of[0].times != 1 or len(self.of) > 1 or self.of[0].share is None):
             raise wrong("`each` over something other than one `share`", "one term with `share`")
-        if self.specific_limits and not self.each:
-            raise wrong("`specific_limits` of a sum", "`each: true`")
+        if self.specific_limits and (len(self.of) > 1 or self.of[0].share is None or self.basis != "mixture"):
+            raise wrong("`specific_limits` of other than one `share` of the mixture", "one term with `share`")
         return self

@@ -9,7 +9,7 @@ import numpy as np
 from formcheck.hazards.answer import Answer
 from formcheck.hazards.missing import RECIPE, Missing, data_missing
 from formcheck.hazards.mixture import filled
-from formcheck.hazards.rule import RuleSource
+from formcheck.hazards.rule import PhWindow, RuleSource
 from formcheck.hazards.sentences import listed, window_sentence
 from formcheck.hazards.tell import Asked, plain_answer
 from formcheck.hazards.verdict import CANNOT_TELL, EXCEEDS
@@ -33,7 +33,7 @@ def _beyond(asked: Asked, stood: Stood, *, sure: bool) -> Answer:
     sure = sure and asked.surely_in_scope
     asked = replace(asked, code=EXCEEDS if sure else CANNOT_TELL)
     ph = _ph(asked)
-    name = asked.facts.names[stood.ingredient] + (f" (its part {stood.of})" if stood.of else "")
+    name = _name(asked, stood)
     said = window_sentence(asked.word, name=name, ph=ph, window=(stood.low, stood.high), below=stood.below,
                            above=stood.above)
     finite = [None if np.isinf(value) else value for value in ph]
@@ -43,11 +43,18 @@ def _beyond(asked: Asked, stood: Stood, *, sure: bool) -> Answer:
         missing=() if sure else tuple(_missing(asked, stood)), faint=not sure and not stood.surely)
 
 
+def _name(asked: Asked, stood: Stood) -> str:
+    assert isinstance(asked.rule, PhWindow)
+    name = asked.facts.names[stood.ingredient]
+    return asked.rule.whose or (f"{name} (its part {stood.of})" if stood.of else name)
+
+
 def _missing(asked: Asked, stood: Stood) -> list[Missing]:
     found = asked.scope_missing()
+    assert isinstance(asked.rule, PhWindow)
     if not stood.surely:
         found += [Missing(stood.ingredient, datum) for datum in data_missing(
-            asked.compiled.matcher, asked.rule.where, asked.facts.materials[stood.ingredient],  # type: ignore[union-attr]
+            asked.compiled.matcher, asked.rule.where, asked.facts.materials[stood.ingredient],
             content=False)]
     if _ph(asked) == (-np.inf, np.inf):
         found.append(Missing(RECIPE, "the pH of the mixture"))
