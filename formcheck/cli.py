@@ -102,7 +102,7 @@ def why(rule: Annotated[str, typer.Argument(help="The id of a rule.", show_defau
     from formcheck.check.rules import find_rule
     from formcheck.report.rule import show_rule
 
-    show_rule(find_rule(rule, rules or []), as_of=_day(as_of))
+    show_rule(find_rule(rule, rules or []).rule, as_of=_day(as_of))
 
 
 @app.command()

@@ -168,6 +168,7 @@ class Finding(Part):
     source: Cited | None = None
     contributions: list[Contribution] = []
     would_settle: list[str] = []  # data that would turn cannot_tell into an answer
+    faint: bool = False  # of a cannot_tell: nothing known points to the trouble, too little is known to rule it out
     place: str = ""
 
 

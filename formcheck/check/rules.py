@@ -96,7 +96,8 @@ def finding_of(answer: Answer) -> Finding:
         unit=answer.unit, basis=answer.basis, said=answer.said, what_to_do=rule.what_to_do,
         who_decides=rule.who_decides, jurisdiction=rule.jurisdiction, in_force_from=answer.in_force_from,
         source=cited_rule(answer.source), contributions=[_contribution(share) for share in answer.contributions],
-        would_settle=list(answer.would_settle), place=answer.place)
+        would_settle=list(answer.would_settle),
+        faint=answer.faint, place=answer.place)
 
 
 def _word(answer: str):
