@@ -148,17 +148,11 @@ def cyanine_length_nm(row: dict, *, end_bonds: float) -> float:
 def end_bonds_of(series: list[dict]) -> float:
     """The end extension, in bonds, with which the box meets a series best (least squares in wavelength)."""
     tried = np.linspace(-1, 3, 401)
-    miss = [
-        sum(
-            (
-                float(row["lambda_max_nm"])
-                - first_band(row, length_nm=cyanine_length_nm(row, end_bonds=ends)).wavelength_nm
-            )
-            ** 2
-            for row in series
-        )
-        for ends in tried
-    ]
+    miss = np.zeros(tried.size)
+    for row in series:
+        bonds = int(row["p"]) + 3
+        without = first_band(row, length_nm=cyanine_length_nm(row, end_bonds=0)).wavelength_nm
+        miss += (float(row["lambda_max_nm"]) - without * ((bonds + tried) / bonds) ** 2) ** 2  # as L^2
     return float(tried[int(np.argmin(miss))])
 
 

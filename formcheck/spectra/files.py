@@ -144,7 +144,7 @@ def read_table(path: Path | str) -> Table:
     separator = _separator(numbered[first][1])
     rows = [_cells(line, i, separator) for i, line in numbered[first:]]
     header = _cells(numbered[first - 1][1], numbered[first - 1][0], separator) if first else []
-    return Table(file, _names(header, rows[0]), _even_rows(file, rows), separator != ",")
+    return Table(file, _names(header, rows[0]), _even_rows(file, rows, header), separator != ",")
 
 
 def _text(raw: bytes, file: str) -> str:
@@ -193,26 +193,22 @@ def _names(header: list[Cell], first_row: list[Cell]) -> tuple[str, ...]:
     )
 
 
-def _even_rows(file: str, rows: list[list[Cell]]) -> list[list[Cell]]:
+def _even_rows(file: str, rows: list[list[Cell]], header: list[Cell]) -> list[list[Cell]]:
+    first = rows[0]
     if len(rows) < 2:
         raise trouble(
-            file, "a single row of numbers", "a row for each wavelength", line=rows[0][0].line, column=1
+            file, "a single row of numbers", "a row for each wavelength", line=first[0].line, column=1
         )
-    if len(rows[0]) < 2:
-        raise trouble(
-            file,
-            "one column",
-            "the wavelength in nm, then values, with comma, semicolon or tab between",
-            line=rows[0][0].line,
-            column=1,
-        )
-    most = len(rows[0])
+    if len(first) < 2:
+        expected = "the wavelength in nm, then values, with comma, semicolon or tab between"
+        raise trouble(file, "one column", expected, line=first[0].line, column=1)
+    most, where = (len(header), "the header") if len(header) > 1 else (len(first), "the first row")
     for row in rows:
         if len(row) > most:
             raise trouble(
                 file,
-                f"{len(row)} cells",
-                f"{most} as in the first row; a decimal comma needs semicolons or tabs between the cells",
+                f"{len(row)} cells in a row where {where} has {most}",
+                "as many; numbers with a decimal comma need semicolons or tabs between them",
                 line=row[0].line,
                 column=row[most].column,
             )
