@@ -26,6 +26,11 @@ Fraction = Annotated[float, Field(ge=0, le=1)]
 Positive = Annotated[float, Field(gt=0)]
 
 
+def _refuse_crossed(low: float | None, value: float, high: float | None) -> None:
+    if (low is not None and low > value) or (high is not None and high < value):
+        raise wrong(f"{value:g} outside its own range {low} to {high}", "low <= value <= high")
+
+
 class Source(Strict):
     """A citation. `verified: false` says that nobody here read it: it is from memory."""
 
@@ -46,6 +51,11 @@ class Number(Strict):
     source: str
     note: str = ""
 
+    @model_validator(mode="after")
+    def _range_holds_the_value(self) -> Number:
+        _refuse_crossed(self.low, self.value, self.high)
+        return self
+
 
 class Text(Strict):
     value: str
@@ -61,6 +71,11 @@ class Part(Strict):
     low: Fraction | None = None
     high: Fraction | None = None
     source: str
+
+    @model_validator(mode="after")
+    def _range_holds_the_value(self) -> Part:
+        _refuse_crossed(self.low, self.mass_fraction, self.high)
+        return self
 
 
 class Elements(Strict):

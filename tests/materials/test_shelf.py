@@ -114,6 +114,8 @@ BROKEN = {
                        "no_source.yaml:4"),
     "formula.yaml": ("id: c\nnames: [c]\nkind: dye\nformula: {value: Qq2, source: given}\n",
                      "formula.yaml:4"),
+    "crossed.yaml": ("id: f\nnames: [f]\nkind: dye\ndensity_g_cm3: {value: 1, low: 2, source: given}\n",
+                     "crossed.yaml:4"),
     "element.yaml": ("id: d\nnames: [d]\nkind: dye\nelements: {only: [Zz]}\n", "element.yaml:4"),
     "empty.yaml": ("", "empty.yaml:1:1"),
     "list.yaml": ("- a\n- b\n", "list.yaml:1:1"),

@@ -25,6 +25,7 @@ OTHER_FORMULA = {
     "methyl_orange": "sodium salt; the library has the free acid",
     "fluorescein_sodium": "disodium salt; the library prints one sodium less",
     "alum": "dodecahydrate; the library has a fragment",
+    "acridine_orange": "hydrochloride; the library has the free base",
     "talc": "whole formula unit; the library has a fragment",
     "iron_oxide_yellow": "FeO(OH); the library has Fe(OH)3 under this number",
     "iron_oxide_black": "Fe3O4",
