@@ -7,8 +7,10 @@ from dataclasses import dataclass
 from datetime import date
 from importlib.util import find_spec
 from pathlib import Path
+from typing import Any
 
-from formcheck.documents import Document, read_yaml, validate
+from formcheck.documents import Document, validate
+from formcheck.hazards.bundle import read_bundle, read_document
 from formcheck.hazards.rule import KINDS, Rule
 from formcheck.hazards.vocabulary import FILE_NAME, Vocabulary, read_vocabulary, refuse_unknown_words
 from formcheck.trouble import InputError, Problem, shown, suggestion, trouble
@@ -52,8 +54,11 @@ def built_in_folder() -> Path:
     return Path(next(iter(spec.submodule_search_locations)))
 
 
-def load_book(folders: Iterable[Path | str] = (), *, own: Path | None = None) -> Book:
+def load_book(folders: Iterable[Path | str] = (), *, own: Path | None = None,
+              bundle: dict[str, Any] | None = None) -> Book:
     """Read formcheck's own packs (or the folder `own` in their stead), then the user's `folders`.
+
+    `bundle` spares the parsing of files that are in it to the byte; by default the one that is shipped.
 
     Raises
     ------
@@ -61,15 +66,16 @@ def load_book(folders: Iterable[Path | str] = (), *, own: Path | None = None) ->
         every file that is not a rule, with its place; two rules of one id; a folder that is not there.
     """
     sources = [(own or built_in_folder(), True), *((Path(folder), False) for folder in folders)]
+    bundle = read_bundle() if bundle is None else bundle
     words = Vocabulary()
     for folder, _ in sources:
-        words = words.with_more(read_vocabulary(folder))
+        words = words.with_more(read_vocabulary(folder, bundle))
     written: dict[str, Written] = {}
     problems: list[Problem] = []
     for folder, is_own in sources:
         for path in rule_files(folder):
             try:
-                one = read_rule(path, words, pack=_pack_name(folder, path), own=is_own)
+                one = read_rule(path, words, pack=_pack_name(folder, path), own=is_own, bundle=bundle)
                 _refuse_second_id(one, written)
             except InputError as error:
                 problems.extend(error.problems)
@@ -90,9 +96,10 @@ def rule_files(folder: Path) -> list[Path]:
     return files
 
 
-def read_rule(path: Path, words: Vocabulary, *, pack: str = "", own: bool = False) -> Written:
+def read_rule(path: Path, words: Vocabulary, *, pack: str = "", own: bool = False,
+              bundle: dict[str, Any] | None = None) -> Written:
     """One rule from its file; InputError with the place of everything that is wrong."""
-    document = read_yaml(path, most_bytes=MOST_BYTES_OF_A_RULE, what="a rule file")
+    document = read_document(path, bundle or {}, most_bytes=MOST_BYTES_OF_A_RULE, what="a rule file")
     rule: Rule = validate(_model_for(document), document)
     if not rule.id.endswith(path.stem.replace("_", "-")):
         raise trouble(document.file, f"the id {shown(rule.id)} in a file named {path.name}",

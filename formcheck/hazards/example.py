@@ -28,16 +28,16 @@ class ExampleIngredient(Strict):
     percent: Percent | None = None
     kind: MaterialKind = "additive"
     name: str = ""
-    groups: list[str] = []
+    groups: list[str] = Field(default_factory=list)
     cas: str | None = None
     ci_name: str | None = None
     charge: Charge | None = None
     physical_form: PhysicalForm | None = None
-    hazards: list[str] = []
-    elements_percent: dict[str, Percent] = {}
+    hazards: list[str] = Field(default_factory=list)
+    elements_percent: dict[str, Percent] = Field(default_factory=dict)
     nonvolatile_percent: Percent = 100.0
     ph_window: Annotated[list[float | None], Field(min_length=2, max_length=2)] | None = None
-    unknown: list[Facet] = []
+    unknown: list[Facet] = Field(default_factory=list)
 
     @model_validator(mode="after")
     def _has_an_amount(self) -> ExampleIngredient:

@@ -116,6 +116,11 @@ class Matcher:
         return min(high, self.cap(selector, material)) if content else high
 
     def cap(self, selector: Selector, material: Material) -> float:
+        """The most a product can hold of what agrees, by its classification and by what of it dries off."""
+        volatile = most_volatile(material) if selector.volatile else 1.0
+        return min(volatile, self._cap_by_class(selector, material))
+
+    def _cap_by_class(self, selector: Selector, material: Material) -> float:
         """The most a product can hold of substances whose hazard class its classification does not list."""
         classes = selector.hazard_class or selector.shown_by_class
         if not classes or material.hazards is None:
@@ -128,6 +133,14 @@ class Matcher:
 
     def _has_none_of(self, material: Material, symbol: str) -> bool:
         return self.knowledge.element_bounds(material, symbol)[1] == 0
+
+
+def most_volatile(material: Material) -> float:
+    """The largest mass fraction that can leave the film; 1 where the record does not tell."""
+    stays = material.nonvolatile_fraction
+    if stays is None:
+        return 1.0
+    return min(1.0, max(0.0, 1.0 - (stays.value if stays.low is None else stays.low)))
 
 
 def is_identified(material: Material) -> bool:

@@ -30,10 +30,10 @@ class Grading(Strict):
 class Where(Strict):
     """The recipes a rule speaks of. An empty list asks nothing; each list named must meet the recipe's."""
 
-    what: list[str] = []
-    use: list[str] = []
-    sold_in: list[str] = []
-    acts: list[str] = []
+    what: list[str] = Field(default_factory=list)
+    use: list[str] = Field(default_factory=list)
+    sold_in: list[str] = Field(default_factory=list)
+    acts: list[str] = Field(default_factory=list)
 
 
 class RuleSource(Strict):
@@ -58,8 +58,8 @@ class RuleBase(Strict):
     title: NonEmpty
     jurisdiction: NonEmpty  # a market of the vocabulary, or `any`
     grade: Grading
-    applies_when: Where = Where()
-    unless: Where = Where()  # each list named here lifts the rule
+    applies_when: Where = Field(default_factory=Where)
+    unless: Where = Field(default_factory=Where)  # each list named here lifts the rule
     sources: Annotated[dict[str, RuleSource], Field(min_length=1)]
     review_by: Day
     why: NonEmpty
@@ -115,7 +115,7 @@ class LimitOnSum(RuleBase):
     quantity: RuleQuantity
     comparison: Comparison
     limit: Annotated[list[Limit], Field(min_length=1)]
-    only_if: list[Condition] = []
+    only_if: list[Condition] = Field(default_factory=list)
 
     def tripped_as(self) -> set[str]:
         """Where only a part counts that a test must tell, the content alone never surely exceeds."""
@@ -146,7 +146,7 @@ class PhWindow(RuleBase):
     kind: Literal["ph_window"]
     where: Selector
     from_records: bool = False
-    window: list[DatedWindow] = []
+    window: list[DatedWindow] = Field(default_factory=list)
     below: str = ""  # what happens below the low end, in a sentence: "it loses its colour"
     above: str = ""
     whose: str = ""  # who stands it, when it is not the ingredient: "skin and eyes"
@@ -189,7 +189,7 @@ class MustNotMeet(RuleBase):
     kind: Literal["must_not_meet"]
     first: Party
     second: Party
-    when: Company = Company()
+    when: Company = Field(default_factory=Company)
     consequence: NonEmpty  # in a sentence: "chlorine gas is set free"
     in_force: InForce
 

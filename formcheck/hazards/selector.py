@@ -19,22 +19,23 @@ FACETS = ("group", "kind", "charge", "cas", "ci_name", "hazard_class", "hazard_c
 class Selector(Strict):
     """Ingredients that agree with every facet named; within one facet, with any of its values.
 
-    `any_of` holds whole selectors of which one must agree. The last three fields do not select: they
+    `any_of` holds whole selectors of which one must agree. The last four fields do not select: they
     say where an ingredient of which too little is known may be left aside (see hazard_rules/README.md).
     """
 
-    group: list[str] = []
-    kind: list[MaterialKind] = []
-    charge: list[Charge] = []
-    cas: list[Cas] = []
-    ci_name: list[str] = []
-    hazard_class: list[str] = []
-    hazard_code: list[HazardCode] = []
-    physical_form: list[PhysicalForm] = []
-    any_of: list[Selector] = []
-    hides_in: list[MaterialKind] = []
-    shown_by_class: list[str] = []
+    group: list[str] = Field(default_factory=list)
+    kind: list[MaterialKind] = Field(default_factory=list)
+    charge: list[Charge] = Field(default_factory=list)
+    cas: list[Cas] = Field(default_factory=list)
+    ci_name: list[str] = Field(default_factory=list)
+    hazard_class: list[str] = Field(default_factory=list)
+    hazard_code: list[HazardCode] = Field(default_factory=list)
+    physical_form: list[PhysicalForm] = Field(default_factory=list)
+    any_of: list[Selector] = Field(default_factory=list)
+    hides_in: list[MaterialKind] = Field(default_factory=list)
+    shown_by_class: list[str] = Field(default_factory=list)
     shown_by_element: str | None = None
+    volatile: bool = False
 
     @model_validator(mode="after")
     def _selects_something(self) -> Selector:

@@ -8,11 +8,12 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from pathlib import Path
-from typing import Annotated
+from typing import Annotated, Any
 
 from pydantic import Field
 
-from formcheck.documents import Document, FieldPath, path_text, read_yaml, validate
+from formcheck.documents import MOST_BYTES, Document, FieldPath, path_text, validate
+from formcheck.hazards.bundle import read_document
 from formcheck.hazards.rule import Caution, LimitOnSum, MustNotMeet, PhWindow, Rule
 from formcheck.hazards.selector import Selector
 from formcheck.materials.record import MaterialKind
@@ -27,7 +28,7 @@ class Family(Strict):
     kind is one of `kinds`; an empty list means any kind."""
 
     meaning: str
-    kinds: list[MaterialKind] = []
+    kinds: list[MaterialKind] = Field(default_factory=list)
 
 
 class HazardClass(Strict):
@@ -40,16 +41,16 @@ class HazardClass(Strict):
 
 class Market(Strict):
     meaning: str
-    members: list[str] = []
+    members: list[str] = Field(default_factory=list)
 
 
 class Vocabulary(Strict):
-    groups: dict[str, Family] = {}
-    hazard_classes: dict[str, HazardClass] = {}
-    markets: dict[str, Market] = {}
-    what: dict[str, str] = {}
-    uses: dict[str, str] = {}
-    acts: dict[str, str] = {}
+    groups: dict[str, Family] = Field(default_factory=dict)
+    hazard_classes: dict[str, HazardClass] = Field(default_factory=dict)
+    markets: dict[str, Market] = Field(default_factory=dict)
+    what: dict[str, str] = Field(default_factory=dict)
+    uses: dict[str, str] = Field(default_factory=dict)
+    acts: dict[str, str] = Field(default_factory=dict)
 
     def with_more(self, other: Vocabulary) -> Vocabulary:
         """Both together; a word of `self` keeps its meaning."""
@@ -61,12 +62,13 @@ class Vocabulary(Strict):
         return [code, *(name for name, market in self.markets.items() if code in market.members)]
 
 
-def read_vocabulary(folder: Path) -> Vocabulary:
+def read_vocabulary(folder: Path, bundle: dict[str, Any] | None = None) -> Vocabulary:
     """The vocabulary of one pack; empty where the folder has none."""
     path = folder / FILE_NAME
     if not path.is_file():
         return Vocabulary()
-    return validate(Vocabulary, read_yaml(path, what="a vocabulary of rules"))
+    what = "a vocabulary of rules"
+    return validate(Vocabulary, read_document(path, bundle or {}, most_bytes=MOST_BYTES, what=what))
 
 
 def refuse_unknown_words(rule: Rule, words: Vocabulary, document: Document) -> None:
