@@ -12,7 +12,8 @@ from pydantic_core import PydanticCustomError
 class Strict(BaseModel):
     """A model that says which key it does not know, and never turns text into numbers."""
 
-    model_config = ConfigDict(extra="forbid", frozen=True, strict=True, allow_inf_nan=False)
+    model_config = ConfigDict(extra="forbid", frozen=True, strict=True, allow_inf_nan=False,
+                              defer_build=True)
 
     @model_validator(mode="before")
     @classmethod
