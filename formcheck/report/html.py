@@ -45,9 +45,11 @@ def table(caption: str, columns: Sequence[Column], rows: Iterable[Sequence[Child
             for name, kind in zip(names, kinds, strict=True)]
     body = [tag("tr", _row_head(row[0], kinds[0]), map(_cell, row[1:], names[1:], kinds[1:]), role="row")
             for row in rows]
+    if not body:
+        return tag("p", f"{caption}: none.")
     drawn = tag("table", tag("caption", caption), tag("thead", tag("tr", head, role="row"), role="rowgroup"),
                 tag("tbody", body, role="rowgroup"), role="table", class_=class_)
-    return tag("div", drawn, class_="frame", role="region", aria_label=caption, tabindex="0")
+    return tag("div", drawn, class_="frame", role="group", aria_label=caption, tabindex="0")
 
 
 def definitions(pairs: Iterable[tuple[str, Child]], *, class_: str = "pairs") -> Markup:
@@ -56,9 +58,8 @@ def definitions(pairs: Iterable[tuple[str, Child]], *, class_: str = "pairs") ->
 
 
 def section(level: int, title: Child, *children: Child, id: str, class_: str | None = None) -> Markup:
-    """A section under a heading of that level, named by it."""
-    heading = tag(f"h{level}", title, id=f"{id}-title")
-    return tag("section", heading, children, id=id, aria_labelledby=f"{id}-title", class_=class_)
+    """A section under a heading of that level."""
+    return tag("section", tag(f"h{level}", title), children, id=id, class_=class_)
 
 
 def _row_head(cell: Child, kind: str | None) -> Markup:

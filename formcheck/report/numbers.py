@@ -15,6 +15,7 @@ MINUS = "−"
 MOST_DIGITS = 7  # of a value whose sd claims to be smaller still
 DIGITS_OF_A_LIMIT = 10  # a limit is law: shown as written, less the dust of floating point
 SUPERSCRIPTS = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
+NORMAL_DIGITS = str.maketrans("⁻⁰¹²³⁴⁵⁶⁷⁸⁹", "-0123456789")
 
 
 def with_sd(value: float | None, sd: float | None = None, *, digits: int = 3) -> str:
@@ -49,7 +50,7 @@ def plain(value: float | None, digits: int = 3) -> str:
     if float(value).is_integer() and abs(value) < 1e6:
         return _signed(str(int(value)))
     power = _power_of_ten(abs(value))
-    place = max(_exponent(value) - digits + 1, -15 - abs(_exponent(value)))
+    place = _exponent(value) - digits + 1
     text = _quantized(Decimal(repr(float(value))).scaleb(-power), place - power)
     text = text.rstrip("0").rstrip(".") if "." in text else text
     return text + (_times_ten_to(power) if power else "")
@@ -68,11 +69,10 @@ def beside_limit(value: float, limit: float, *, digits: int = 3) -> str:
 
     90.04 against a limit of 90 is not `90.0`, which would read as met.
     """
-    for enough in range(digits, 16):
-        text = plain(value, enough)
-        if value == limit or _read_back(text) not in (limit, None):
-            return text
-    return exact(value)
+    texts = (plain(value, enough) for enough in range(digits, 18))
+    if value == limit:
+        return next(texts)
+    return next((text for text in texts if _read_back(text) != limit), plain(value, 17))
 
 
 def interval(low: float | None, high: float | None, *, digits: int = 3) -> str:
@@ -146,8 +146,7 @@ def _signed(text: str) -> str:
     return text.replace("-", MINUS)
 
 
-def _read_back(text: str) -> float | None:
-    try:
-        return float(text.replace(MINUS, "-"))
-    except ValueError:
-        return None
+def _read_back(text: str) -> float:
+    """The number that `plain` printed."""
+    mantissa, _, power = text.replace(MINUS, "-").partition(" × 10")
+    return float(f"{mantissa}e{power.translate(NORMAL_DIGITS) or 0}")

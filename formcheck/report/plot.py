@@ -17,7 +17,7 @@ from itertools import pairwise
 from pathlib import Path
 
 from formcheck.report.html import Markup, tag
-from formcheck.report.ticks import round_range, round_ticks, tick_labels
+from formcheck.report.ticks import no_span, round_range, round_ticks, tick_labels
 
 DASHES = (None, "7 4", "2 3", "10 3 2 3", "14 5", "1 4")
 CHARACTER_PX = 6.4  # a mean width at the font size below; labels are spaced by it
@@ -29,7 +29,10 @@ LONGEST_LEGEND = 8  # beyond so many curves, names help nobody; the table does
 
 @dataclass(frozen=True)
 class Axis:
-    """What an axis shows; its ends are found from the data where they are not given."""
+    """What an axis shows; its ends are found from the data where they are not given.
+
+    Given ends of x cut the data; given ends of y give way to data beyond them.
+    """
 
     label: str
     low: float | None = None
@@ -131,28 +134,36 @@ def visible_spectrum() -> tuple[StripCell, ...]:
 
 def _frame(series: Sequence[Series], x: Axis, y: Axis, *, strip: bool, top: bool, width: int,
            height: int) -> Frame:
-    spans_x = _span(x, (one.x for one in series), widen=False)
-    ordinates = (values for one in series for values in (one.y, one.low or (), one.high or ()))
-    spans_y = _span(y, ordinates, widen=True)
+    spans_x, spans_y = _x_span(x, series), _y_span(y, series)
     widest = max(map(len, tick_labels(round_ticks(*spans_y))), default=1)
     above = 24 + (36 if top else 0)
     return Frame(left=14 + CHARACTER_PX * widest, right=width - 18, top=above,
                  bottom=height - 40 - (STRIP_PX if strip else 0), x=spans_x, y=spans_y)
 
 
-def _span(axis: Axis, values: Iterable[Sequence[float]], *, widen: bool) -> tuple[float, float]:
-    """The ends of an axis: as given, else the data's, widened to round numbers where asked."""
-    finite = [value for row in values for value in row if math.isfinite(value)]
-    low, high = min(finite, default=0.0), max(finite, default=1.0)
-    if axis.low is not None:
-        low = axis.low
-    if axis.high is not None:
-        high = max(axis.high, low)
-    if widen or high <= low:
-        rounded = round_range(low, high)
-        low, high = (low if axis.low is not None and high > low else rounded[0],
-                     high if axis.high is not None and high > low else rounded[1])
-    return low, high
+def _x_span(axis: Axis, series: Sequence[Series]) -> tuple[float, float]:
+    """The ends as given, else those of the data; points beyond given ends are not drawn."""
+    low, high = _ends(one.x for one in series)
+    low = low if axis.low is None else axis.low
+    high = high if axis.high is None else axis.high
+    return round_range(low, high) if no_span(low, high) else (low, high)
+
+
+def _y_span(axis: Axis, series: Sequence[Series]) -> tuple[float, float]:
+    """The ends as given, widened where the data go beyond, else round numbers about the data."""
+    low, high = _ends(values for one in series for values in (one.y, one.low or (), one.high or ()))
+    given_low = axis.low if axis.low is not None and axis.low <= low else None
+    given_high = axis.high if axis.high is not None and axis.high >= high else None
+    low, high = (low if given_low is None else given_low, high if given_high is None else given_high)
+    rounded = round_range(low, high)
+    if no_span(low, high):
+        return rounded
+    return (rounded[0] if given_low is None else given_low, rounded[1] if given_high is None else given_high)
+
+
+def _ends(rows: Iterable[Sequence[float]]) -> tuple[float, float]:
+    finite = [value for row in rows for value in row if math.isfinite(value)]
+    return min(finite, default=0.0), max(finite, default=1.0)
 
 
 def _grid(frame: Frame, x: Axis, y: Axis) -> list[Markup]:
@@ -197,7 +208,7 @@ def _top_axis(frame: Frame, top: TopAxis) -> Markup:
 def _band(frame: Frame, one: Series) -> list[Markup]:
     """The area between low and high, in pieces where either is not finite."""
     pieces = []
-    for run in _runs(zip(one.x, one.low or (), one.high or (), strict=True)):
+    for run in _runs(frame, zip(one.x, one.low or (), one.high or (), strict=True)):
         upper = [(x, high) for x, _, high in run]
         lower = [(x, low) for x, low, _ in reversed(run)]
         pieces.append(tag("path", d=_path(frame, [*upper, *lower]) + "Z", fill=one.hex or "currentColor",
@@ -209,7 +220,7 @@ def _curve(frame: Frame, one: Series, dash: str | None) -> list[Markup]:
     """The line itself, with gaps where there is no value; a lone point is a dot."""
     stroke = one.hex or "currentColor"
     drawn = []
-    for run in _runs(zip(one.x, one.y, strict=True)):
+    for run in _runs(frame, zip(one.x, one.y, strict=True)):
         if len(run) > 1:
             drawn.append(tag("path", d=_path(frame, run), fill="none", stroke=stroke, stroke_width="1.8",
                              stroke_dasharray=dash, stroke_linejoin="round", class_="plot-curve"))
@@ -253,11 +264,11 @@ def _legend(named: Sequence[tuple[int, str]], series: Sequence[Series], *, left:
     return drawn
 
 
-def _runs(points: Iterable[tuple[float, ...]]) -> list[list[tuple[float, ...]]]:
-    """Stretches of points with every number finite."""
+def _runs(frame: Frame, points: Iterable[tuple[float, ...]]) -> list[list[tuple[float, ...]]]:
+    """Stretches of points with every number finite and x on the axis."""
     runs: list[list[tuple[float, ...]]] = [[]]
     for point in points:
-        if all(map(math.isfinite, point)):
+        if all(map(math.isfinite, point)) and frame.x[0] <= point[0] <= frame.x[1]:
             runs[-1].append(point)
         elif runs[-1]:
             runs.append([])

@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Mapping
 from datetime import date
-from typing import Any
+from typing import Any, Literal, get_origin
 
 from pydantic import BaseModel
 
@@ -28,15 +28,20 @@ UNIT_ENDINGS = {
 def record_rows(record: BaseModel, cite: Cite, *, skip: frozenset[str] = frozenset(),
                 depth: int = 0) -> Iterator[Row]:
     """Rows of every field that holds something; nested records hang one step deeper."""
-    for name, value in record:
+    for name, value in told(record).items():
         if name not in skip and name != "source":
-            yield from _rows(name, value, cite, depth, stated=name in record.model_fields_set)
+            yield from _rows(name, value, cite, depth)
 
 
-def _rows(name: str, value: Any, cite: Cite, depth: int, *, stated: bool) -> Iterator[Row]:
+def told(record: BaseModel) -> dict[str, Any]:
+    """Fields that say something: not empty, nor a nought or an empty list that nobody wrote."""
+    stated = record.model_fields_set
+    return {name: spelled(value) if _is_word(record, name) else value for name, value in record
+            if value is not None and value != "" and (value or name in stated)}
+
+
+def _rows(name: str, value: Any, cite: Cite, depth: int) -> Iterator[Row]:
     label, unit = label_and_unit(name)
-    if value is None or value == "" or (not stated and value in ([], {}, (), False)):
-        return
     if isinstance(value, BaseModel):
         yield from _record(label, unit, value, cite, depth)
     elif isinstance(value, Mapping):
@@ -70,8 +75,7 @@ def _record(label: str, unit: str, record: BaseModel, cite: Cite, depth: int) ->
 
 def leaf_text(record: BaseModel, unit: str) -> str:
     """A flat record in words: a value with its spread, or its fields one after the other."""
-    fields = {key: value for key, value in record if key not in ("source", "name", "material")
-              and (key in record.model_fields_set or value is not False) and value not in (None, "", [], {})}
+    fields = {key: value for key, value in told(record).items() if key not in ("source", "name", "material")}
     note = fields.pop("note", "")
     if "value" in fields and isinstance(fields["value"], int | float):
         text = with_unit(with_sd(fields.pop("value"), fields.pop("sd", None), digits=6), unit)
@@ -85,12 +89,22 @@ def leaf_text(record: BaseModel, unit: str) -> str:
     return "; ".join(part for part in (", ".join(x for x in (text, rest) if x), one_line(note)) if part)
 
 
+FIELD_WORDS = {
+    "ci generic name": "Colour Index name", "ci constitution number": "Colour Index number", "cas": "CAS",
+    "k and s": "K and S", "ph window": "pH window", "pka": "pKa", "acid base": "acid and base",
+    "solubility water": "solubility in water", "ci name": "Colour Index name", "voc": "VOC",
+}
+
+
 def label_and_unit(name: str) -> tuple[str, str]:
     """`density_g_cm3` is `density` in `g/cm³`."""
     for ending, unit in UNIT_ENDINGS.items():
         if name.endswith(ending) and name != ending:
-            return spelled(name.removesuffix(ending)), unit_text(unit)
-    return ("assay", unit_text(UNIT_ENDINGS[name])) if name in UNIT_ENDINGS else (spelled(name), "")
+            words = spelled(name.removesuffix(ending))
+            return FIELD_WORDS.get(words, words), unit_text(unit)
+    if name in UNIT_ENDINGS:
+        return "assay", unit_text(UNIT_ENDINGS[name])
+    return FIELD_WORDS.get(spelled(name), spelled(name)), ""
 
 
 def plain_text(value: Any) -> str:
@@ -119,6 +133,11 @@ def _cited(text: str, record: BaseModel, cite: Cite) -> str:
 
 def _name_of(record: Any) -> str:
     return one_line(getattr(record, "name", "") or getattr(record, "material", ""))
+
+
+def _is_word(record: BaseModel, name: str) -> bool:
+    """Whether a field holds one of a few fixed words: these are spelled out, ids and names are not."""
+    return get_origin(type(record).model_fields[name].annotation) is Literal
 
 
 def _is_deep(value: Any) -> bool:

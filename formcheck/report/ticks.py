@@ -7,13 +7,16 @@ from itertools import pairwise
 
 from formcheck.report.numbers import MINUS
 
+SMALLEST_SPAN = 1e-290
 ROUND_STEPS = (1.0, 2.0, 2.5, 5.0, 10.0)
 
 
 def round_ticks(low: float, high: float, *, about: int = 6) -> list[float]:
     """Round numbers from `low` to `high`, about so many; both ends may lie between two of them."""
-    if not (math.isfinite(low) and math.isfinite(high)) or high <= low:
-        return [low] if math.isfinite(low) else []
+    if not (math.isfinite(low) and math.isfinite(high)):
+        return []
+    if no_span(low, high):
+        return [low]
     rough = (high - low) / max(about, 1)
     power = 10.0 ** math.floor(math.log10(rough))
     step = next(power * one for one in ROUND_STEPS if power * one >= rough * (1 - 1e-9))
@@ -23,12 +26,17 @@ def round_ticks(low: float, high: float, *, about: int = 6) -> list[float]:
 
 def round_range(low: float, high: float, *, about: int = 6) -> tuple[float, float]:
     """The range widened to the round numbers on either side."""
-    if high <= low:
-        half = abs(low) / 2 or 1.0
+    if no_span(low, high):
+        half = abs(low) / 2 if abs(low) > SMALLEST_SPAN else 1.0
         low, high = low - half, high + half
     ticks = round_ticks(low, high, about=about)
     step = ticks[1] - ticks[0] if len(ticks) > 1 else high - low
     return math.floor(low / step + 1e-9) * step, math.ceil(high / step - 1e-9) * step
+
+
+def no_span(low: float, high: float) -> bool:
+    """Whether two ends lie too close for numbers between them."""
+    return high - low <= max(1e-12 * max(abs(low), abs(high)), SMALLEST_SPAN)
 
 
 def tick_labels(ticks: list[float]) -> list[str]:

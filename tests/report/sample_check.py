@@ -24,14 +24,15 @@ from formcheck.check.record import (
 ACT = Cited(cite="Invented Coatings Act 2000, s. 3(1)", kind="law", edition="2023-11-30")
 MEMORY = Cited(cite="Invented Handbook of Dyes, table 9", kind="memory", verified=False)
 PRACTICE = Cited(cite="invented common practice of the demo workshop", kind="common_practice")
-SHEET = Cited(cite="Invented data sheet of the yellow paste, section 9", kind="supplier", edition="2026-02-03")
+SHEET = Cited(cite="Invented data sheet of the yellow paste, section 9", kind="supplier",
+              edition="2026-02-03")
 HANDBOOK = Cited(cite="Invented Handbook of Pigments, p. 12", kind="handbook", edition="4th")
 
 
 def reflectance() -> Spectrum:
     """A made-up reflectance of a blue, with a band about it."""
     wavelength = [360.0 + 5 * step for step in range(85)]
-    value = [0.05 + 0.45 / (1 + ((nm - 465) / 48) ** 2) + 0.12 * max(0.0, (nm - 690) / 90) for nm in wavelength]
+    value = [0.05 + 0.45 / (1 + ((nm - 465) / 48) ** 2) + max(0.0, (nm - 690) / 750) for nm in wavelength]
     return Spectrum(quantity="reflectance", wavelength_nm=wavelength, value=value,
                     low=[one * 0.92 - 0.004 for one in value], high=[one * 1.08 + 0.004 for one in value])
 
@@ -40,8 +41,9 @@ def shade() -> Shade:
     return Shade(
         light="D65", observer_deg=10,
         swatch=Swatch(lab=(45.31, -8.42, -33.08), srgb_hex="#006fa3", in_gamut=False),
-        xyz=(13.1, 14.8, 34.2), lch=(45.31, 34.13, 255.7), lab_sd=(0.83, 0.52, 1.14), spectrum=reflectance(),
-        ground="chart_white", geometry="dry film of 12 µm over chart_white, specular included",
+        xyz=(13.1, 14.8, 34.2), lch=(45.31, 34.13, 255.7), lab_sd=(0.83, 0.52, 1.14),
+        spectrum=reflectance(), ground="chart_white",
+        geometry="dry film of 12 µm over chart_white, specular included",
         wanted=Wanted(swatch=Swatch(lab=(46.0, -9.5, -34.5), srgb_hex="#0072a8", in_gamut=True),
                       light="D65", observer_deg=10, tolerance_de00=2.0),
         de00=1.41, de00_sd=0.367, probability_within=0.71, difference_words="darker, redder, duller",
@@ -105,11 +107,11 @@ def sample_check() -> Check:
         title="Sea blue, waterborne screen ink", what="ink", use=["textile", "consumer_coating"],
         sold_in=["XX", "YY"], recipe_digest="8f14e45fceea167a5a36dedd4bea2543",
         composition=[
-            Line(ingredient="harbour blue paste", material="harbour_blue_paste", written="12 % w/w", mass_g=120.0,
-                 mass_fraction=0.12, dry_volume_fraction=0.141, place="sea_blue.yaml:8:5",
+            Line(ingredient="harbour blue paste", material="harbour_blue_paste", written="12 % w/w",
+                 mass_g=120.0, mass_fraction=0.12, dry_volume_fraction=0.141, place="sea_blue.yaml:8:5",
                  record_from="the recipe"),
-            Line(ingredient="chrome_yellow_demo", material="chrome_yellow_demo", written="0.8 parts", mass_g=8.0,
-                 mass_fraction=0.008, dry_volume_fraction=0.0051, place="sea_blue.yaml:9:5",
+            Line(ingredient="chrome_yellow_demo", material="chrome_yellow_demo", written="0.8 parts",
+                 mass_g=8.0, mass_fraction=0.008, dry_volume_fraction=0.0051, place="sea_blue.yaml:9:5",
                  record_from="shelf/"),
             Line(ingredient="latex", material="sea_latex", written="300 mL", mass_g=None, mass_fraction=None,
                  place="sea_blue.yaml:12:5", record_from="built in"),
@@ -118,22 +120,27 @@ def sample_check() -> Check:
                  record_from="built in"),
         ],
         figures=[
-            Figure(name="density", value=1.0832, unit="g/cm3", sd=0.0211, how="additive volumes", source=SHEET),
+            Figure(name="density", value=1.0832, unit="g/cm3", sd=0.0211, how="additive volumes",
+                   source=SHEET),
             Figure(name="solids", value=41.27, unit="% w/w", sd=0.61, how="non-volatile fractions"),
             Figure(name="PVC", value=None, unit="%", low=4.0, high=19.0, reason="no density of sea_latex"),
             Figure(name="VOC, ready to use", value=12.4, unit="g/L", low=11.0, high=14.0, how="by formula"),
             Figure(name="dry film thickness", value=12.0, unit="um", sd=1.0, how="as written"),
         ],
         ph=Figure(name="pH", value=10.02, unit="", sd=0.05, how="measured by the maker"),
-        ph_computed=Figure(name="pH computed", value=9.61, unit="", sd=0.3, how="charge balance, Davies activities"),
-        dye_forms=[DyeForms(material="demo_indicator", forms=["acid form", "base form"], shares=[0.0688, 0.9312],
-                            pka=[8.9]),
-                   DyeForms(material="lemon_demo_yellow", forms=["azo", "hydrazone"], shares=None, pka=[],
-                            reason="no pKa on its record")],
+        ph_computed=Figure(name="pH computed", value=9.61, unit="", sd=0.3,
+                           how="charge balance, Davies activities"),
+        dye_forms=[
+            DyeForms(material="demo_indicator", forms=["acid form", "base form"], shares=[0.0688, 0.9312],
+                     pka=[8.9]),
+            DyeForms(material="lemon_demo_yellow", forms=["azo", "hydrazone"], shares=None, pka=[],
+                     reason="no pKa on its record"),
+        ],
         shade=shade(), findings=findings(),
         unknowns=[Unknown(what="PVC and the film's solids by volume", why="sea_latex has no density",
                           would_settle="density_g_cm3 of sea_latex, with its source"),
-                  Unknown(what="slow fading of demo_indicator at high pH", why="no published rate is on record")],
+                  Unknown(what="slow fading of demo_indicator at high pH",
+                          why="no published rate is on record")],
         rules_applied=37, rules_not_applicable=121, within=["XX-CADMIUM", "XX-MERCURY", "YY-VOC"],
         sources=[ACT, SHEET],
     )

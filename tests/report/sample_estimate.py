@@ -50,7 +50,8 @@ def sample_estimate() -> Estimate:
         spectrum=spectrum([(527.3, 61200.0), (230.0, 40000.0)]),
         shade=EstimatedShade(light="D65", observer_deg=2, concentration_mol_l=1.2e-5, path_length_cm=1.0,
                              swatch=swatch("#d58bb0", 66.0), words="pink to violet",
-                             region=[swatch("#e0a080", 71.0), swatch("#d58bb0", 66.0), swatch("#9f8fd0", 63.0)]))
+                             region=[swatch("#e0a080", 71.0), swatch("#d58bb0", 66.0),
+                                     swatch("#9f8fd0", 63.0)]))
     acid = EstimatedForm(
         name="acid form", boxes=[ring()], colourless=True,
         bands=[EstimatedBand(label="ring, |k|=1 to 2", lambda_max_nm=256.0, lambda_sd_nm=20.0,
