@@ -12,7 +12,7 @@ from typing import NamedTuple
 import numpy as np
 
 from formcheck.hazards.matching import Matcher, class_of, is_identified, substance_key
-from formcheck.hazards.missing import Missing, data_missing
+from formcheck.hazards.missing import RECIPE, Missing, data_missing
 from formcheck.hazards.selector import Selector
 from formcheck.hazards.summed import UNITS, RuleQuantity, Summed, Term
 from formcheck.materials.record import Material
@@ -148,11 +148,16 @@ def _missing(summed: Summed, materials: Materials, matcher: Matcher) -> tuple[Mi
     for i, material in enumerate(materials):
         for term in summed.of:
             low, high = _content(term, material, matcher)
-            if low < high and term.only_the:
-                found.append(Missing(i, f"how much is {term.only_the}, by test,"))
-            elif low < high and term.element:
-                found.append(Missing(i, f"the {term.element} content"))
-            elif low < high and term.share:
-                found += [Missing(i, datum)
-                          for datum in data_missing(matcher, term.share, material, content=True)]
+            if low < high:
+                found += _missing_of_term(i, material, term, matcher)
     return tuple(dict.fromkeys(found))
+
+
+def _missing_of_term(i: int, material: Material, term: Term, matcher: Matcher) -> list[Missing]:
+    tested = [Missing(RECIPE, f"a test for {term.only_the}")] if term.only_the else []
+    if term.share:
+        data = data_missing(matcher, term.share, material, content=True)
+        return [*(Missing(i, datum) for datum in data), *tested]
+    assert term.element
+    low, high, _ = matcher.knowledge.element_bounds(material, term.element)
+    return [*([Missing(i, f"the {term.element} content")] if low < high else []), *tested]

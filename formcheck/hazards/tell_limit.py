@@ -47,7 +47,8 @@ def _name(how: CompiledLimit, row: Row | None) -> str:
     name = how.rule.quantity.name
     if row is None or not how.rule.quantity.each:
         return name
-    return f"{name} ({row.label})" if row.label else f"{name} (a substance that no record names)"
+    label = row.label or "a substance that no record names"
+    return f"{name} (if {label} is one)" if not row.low.any() else f"{name} ({label})"
 
 
 def _unstated(asked: Asked) -> str:
@@ -108,9 +109,9 @@ def _of_quantity(facts: MixtureFacts, quantity: Quantity, row: Row | None) -> li
     if row is None:
         return [Missing(RECIPE, "the VOC content of the mixture")]
     present, x = facts.present[0], facts.mass_fraction[0]
-    found = [one for one in quantity.missing if present[one.ingredient]]
     widths = np.nan_to_num(x, nan=1.0) * (row.high - row.low)
-    found.sort(key=lambda one: -widths[one.ingredient])
+    found = [one for one in quantity.missing if one.ingredient == RECIPE or present[one.ingredient]]
+    found.sort(key=lambda one: np.inf if one.ingredient == RECIPE else -widths[one.ingredient])
     found += [Missing(int(i), "the amount") for i in np.flatnonzero(np.isnan(x))]
     if quantity.summed.basis == "dry_film":
         found += [Missing(int(i), "the part that stays in the dry film")
