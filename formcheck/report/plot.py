@@ -134,7 +134,8 @@ def visible_spectrum() -> tuple[StripCell, ...]:
 
 def _frame(series: Sequence[Series], x: Axis, y: Axis, *, strip: bool, top: bool, width: int,
            height: int) -> Frame:
-    spans_x, spans_y = _x_span(x, series), _y_span(y, series)
+    spans_x = _x_span(x, series)
+    spans_y = _y_span(y, series, within=spans_x)
     widest = max(map(len, tick_labels(round_ticks(*spans_y))), default=1)
     above = 24 + (36 if top else 0)
     return Frame(left=14 + CHARACTER_PX * widest, right=width - 18, top=above,
@@ -149,9 +150,10 @@ def _x_span(axis: Axis, series: Sequence[Series]) -> tuple[float, float]:
     return round_range(low, high) if no_span(low, high) else (low, high)
 
 
-def _y_span(axis: Axis, series: Sequence[Series]) -> tuple[float, float]:
-    """The ends as given, widened where the data go beyond, else round numbers about the data."""
-    low, high = _ends(values for one in series for values in (one.y, one.low or (), one.high or ()))
+def _y_span(axis: Axis, series: Sequence[Series], *, within: tuple[float, float]) -> tuple[float, float]:
+    """The ends as given, widened where data `within` the x axis go beyond, else round numbers about them."""
+    low, high = _ends([y for x, y in zip(one.x, values, strict=True) if within[0] <= x <= within[1]]
+                      for one in series for values in (one.y, one.low, one.high) if values is not None)
     given_low = axis.low if axis.low is not None and axis.low <= low else None
     given_high = axis.high if axis.high is not None and axis.high >= high else None
     low, high = (low if given_low is None else given_low, high if given_high is None else given_high)

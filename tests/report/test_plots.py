@@ -61,7 +61,8 @@ def test_the_curve_runs_where_the_axis_says():
 
 
 def test_given_ends_cut_x_and_give_way_in_y():
-    root = drawn([Series([0, 5, 10, 15, 20], [0.2, 0.5, 1.3, -0.2, 9.0])], x=Axis("x", 0, 15), y=Axis("y", 0, 1))
+    curve = Series([0, 5, 10, 15, 20], [0.2, 0.5, 1.3, -0.2, 9.0])
+    root = drawn([curve], x=Axis("x", 0, 15), y=Axis("y", 0, 1))
     (curve,) = curves(root)
     points = re.findall(r"([\d.]+) ([\d.]+)", curve.get("d"))
     assert len(points) == 4
