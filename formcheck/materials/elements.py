@@ -12,6 +12,10 @@ from formcheck.quantity import Provenance, Quantity, known, unknown
 __all__ = ["ElementBounds", "element_bounds", "molar_mass", "molar_mass_of", "parse_formula"]
 
 MG_KG = 1e-6
+# Made from ores and metals, so that no formula tells what they carry along (common practice): only an assay does.
+MINERAL_KINDS = ("pigment", "extender", "metal_powder")
+# Elements that such goods are assayed for; carbon, oxygen and the like are told by the formula alone.
+TRACED = frozenset("As Ba Cd Co Cr Cu Hg Mn Ni Pb Sb Se Sn Sr Zn".split())
 NOT_KNOWN = "no composition on record"
 
 
@@ -30,8 +34,9 @@ def element_bounds(shelf: Shelf, material: Material, symbol: str) -> ElementBoun
     """Least and greatest mass fraction of the element `symbol` in the material as supplied.
 
     An assay on the record comes first; then a closed list of elements (`elements.only`) that leaves
-    the element out; then the composition, whose undeclared rest may be anything; then the formula,
-    which counts no traces. With none of these anything from 0 to 1 is possible.
+    the element out; then the composition, whose undeclared rest may be anything; then the formula.
+    Lists and formulas count no traces, so in a pigment, extender or metal powder they settle nothing
+    about a metal they do not name. With none of these anything from 0 to 1 is possible.
 
     Raises
     ------
@@ -41,11 +46,16 @@ def element_bounds(shelf: Shelf, material: Material, symbol: str) -> ElementBoun
     elements = material.elements
     if elements and symbol in elements.mg_kg:
         return _assayed(elements.mg_kg[symbol])
-    if elements and elements.only is not None and symbol not in elements.only:
+    if elements and elements.only is not None and symbol not in elements.only and not traces_open(material, symbol):
         return ElementBounds(0.0, 0.0, "not among the elements on record; traces not counted")
     if material.composition:
         return _of_composition(shelf, material, symbol)
     return _of_formula(material, symbol)
+
+
+def traces_open(material: Material, symbol: str) -> bool:
+    """Whether only an assay tells if the material carries the element."""
+    return material.kind in MINERAL_KINDS and symbol in TRACED
 
 
 def _assayed(number: Number) -> ElementBounds:
@@ -83,6 +93,8 @@ def _of_formula(material: Material, symbol: str) -> ElementBounds:
     if material.formula is None:
         return ANYTHING
     share = element_mass_fractions(material.formula.value).get(symbol, 0.0)
+    if share == 0.0 and traces_open(material, symbol):
+        return ElementBounds(0.0, 1.0, f"no assay of traces of {symbol} on record")
     return ElementBounds(share, share, f"by the formula {material.formula.value}; traces not counted")
 
 

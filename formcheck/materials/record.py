@@ -94,6 +94,9 @@ class Elements(Strict):
         for symbol in (*(self.only or ()), *self.mg_kg):
             if symbol not in atomic_weights():
                 raise wrong(f"the element {symbol[:20]!r}", "symbols of elements, such as Pb")
+        if self.only is not None and not set(self.mg_kg) <= set(self.only):
+            foreign = min(set(self.mg_kg) - set(self.only))
+            raise wrong(f"an assay of {foreign}, which `only` leaves out", f"`only` with {foreign}, or without the list")
         return self
 
 
