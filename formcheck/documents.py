@@ -18,7 +18,7 @@ from formcheck.trouble import InputError, Place, Problem, shown, suggestion, tro
 
 MOST_BYTES = 2_000_000
 MOST_DEPTH = 24
-MOST_NODES = 200_000
+MOST_NODES = 50_000
 
 INTEGER = re.compile(r"[-+]?(0|[1-9][0-9]{0,29})")
 DECIMAL = re.compile(r"[-+]?(0|[1-9][0-9]*)?(\.[0-9]*)?([eE][-+]?[0-9]{1,3})?")

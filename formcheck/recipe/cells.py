@@ -8,8 +8,8 @@ from datetime import date, time, timedelta
 
 from formcheck.trouble import trouble
 
-MOST_ROWS = 10_000
-MOST_COLUMNS = 200
+MOST_ROWS = 2_000
+MOST_COLUMNS = 60
 
 
 @dataclass(frozen=True)

@@ -7,7 +7,7 @@ import re
 from pathlib import Path
 
 from formcheck.documents import Document, decode, read_bytes
-from formcheck.recipe.cells import Cell, Rows, delimited_rows
+from formcheck.recipe.cells import MOST_COLUMNS, MOST_ROWS, Cell, Rows, delimited_rows
 from formcheck.recipe.table import document_from_rows, heading_row, numeric_cells
 from formcheck.trouble import InputError, Place, Problem, shown
 
@@ -23,25 +23,25 @@ def read_csv(path: Path) -> Document:
     may have a decimal comma; decimal commas and decimal points in one file are refused.
     """
     file = str(path)
-    text = decode(read_bytes(path, what="a recipe file"), file)
-    text = re.sub(r"\Asep=.[ \t]*(?=\r?\n)", "", text)  # a hint some spreadsheets write for themselves
-    rows = _rows_by_the_right_delimiter(text, file)
-    return document_from_rows(rows, file)
+    text = decode(read_bytes(path, what="a recipe file"), file).replace("\r\n", "\n").replace("\r", "\n")
+    text = re.sub(r"\Asep=.[ \t]*(?=\n)", "", text)  # a hint some spreadsheets write for themselves
+    delimiter = _delimiter(text)
+    if delimiter is None:
+        return document_from_rows([], file)  # which says that there is no row of headings
+    rows = delimited_rows(text, delimiter, file)
+    return document_from_rows(rows if delimiter == "," else with_decimal_points(rows, file), file)
 
 
-def _rows_by_the_right_delimiter(text: str, file: str) -> Rows:
-    refusal: InputError | None = None
-    for delimiter in DELIMITERS:
-        try:
-            rows = delimited_rows(text, delimiter, file)
-        except InputError as error:
-            refusal = refusal or error
-            continue
-        if heading_row(rows) is not None:
-            return rows if delimiter == "," else with_decimal_points(rows, file)
-    if refusal:
-        raise refusal
-    return []
+def _delimiter(text: str) -> str | None:
+    """The delimiter that makes some line a row of headings."""
+    for line in text.split("\n", MOST_ROWS)[:MOST_ROWS]:
+        for delimiter in DELIMITERS:
+            if delimiter not in line:
+                continue
+            cells = [Cell(cell[:100].strip(' "'), 1, 1) for cell in line.split(delimiter, MOST_COLUMNS)]
+            if heading_row([cells]) is not None:
+                return delimiter
+    return None
 
 
 def with_decimal_points(rows: Rows, file: str) -> Rows:

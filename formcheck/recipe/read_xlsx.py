@@ -13,6 +13,7 @@ import re
 import zipfile
 import zlib
 from collections.abc import Iterator
+from datetime import date, time, timedelta
 from pathlib import Path
 from xml.parsers import expat
 
@@ -218,6 +219,8 @@ def _cell(value, line: int, column: int, hidden: set[str]) -> Cell:
         return Cell(value, line, column, "a formula that ended in an error")
     if "formula" in hidden and value in ("", None):
         return Cell(value, line, column, "a formula whose value was not saved")
+    if isinstance(value, date | time | timedelta):
+        return Cell(value, line, column, f"a date or time, {value}")
     if "percent" in hidden and isinstance(value, int | float):
         value = f"{value * 100:.12g} %"  # 5 % is kept as 0.05
     return Cell(value, line, column)
