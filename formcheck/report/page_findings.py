@@ -3,15 +3,18 @@
 from __future__ import annotations
 
 from formcheck.check.record import Check, Contribution, Finding, Grade, Unknown
-from formcheck.report.finding_words import facts
-from formcheck.report.html import Markup, definitions, section, table, tag
+from formcheck.report.finding_words import by_what_would_settle, facts, limit_text, value_text
+from formcheck.report.html import Child, Column, Markup, definitions, section, table, tag
 from formcheck.report.limit_bar import limit_bar
 from formcheck.report.marks import mark
 from formcheck.report.numbers import plain
 from formcheck.report.words import (
     GRADE_MEANINGS,
     NOTHING_FOUND,
+    NOTHING_TO_NAME,
     by_grade,
+    cited_text,
+    count,
     one_line,
     rules_text,
     untold_findings,
@@ -33,13 +36,32 @@ def findings_section(check: Check, *, level: int, id: str) -> Markup:
 
 
 def untold_section(check: Check, *, level: int, id: str) -> Markup | None:
-    """What formcheck could not tell, and the datum that would settle each."""
+    """What formcheck could not tell: first what its own reckoning lacks, then the rules left open."""
     untold = untold_findings(check)
     if not untold and not check.unknowns:
         return None
-    findings = [_finding(one, level=level + 1, id=f"{id}-untold-{place}") for place, one in enumerate(untold)]
     unknowns = [_unknown(one, level=level + 1) for one in check.unknowns]
-    return section(level, "Could not be told", findings, unknowns, id=f"{id}-untold")
+    still_open = [_open(needed, found, level=level + 1, place=place)
+                  for place, (needed, found) in enumerate(by_what_would_settle(untold), 1)]
+    return section(level, "Could not be told", unknowns, still_open, id=f"{id}-untold")
+
+
+def _open(needed: list[str], found: list[Finding], *, level: int, place: int) -> Markup:
+    """The rules that the same data would settle, in a table that holds all they say."""
+    settled_by = tag("ul", [tag("li", one) for one in needed or [NOTHING_TO_NAME]])
+    columns: list[Column] = ["rule", "what is open", "source", "if it applies", "who decides", "where"]
+    rows: list[list[Child]] = [[
+        [tag("code", one_line(one.rule_id)), tag("span", one_line(one.title), class_="under")],
+        [one_line(one.said), tag("span", _against(one), class_="under")],
+        cited_text(one.source) if one.source else "", one_line(one.what_to_do), one_line(one.who_decides),
+        tag("code", one_line(one.place)) if one.place else ""] for one in found]
+    title = tag(f"h{level}", mark("unknown"), f"{count(len(found), 'rule')} would be settled by")
+    rules = table(f"Rules left open, group {place}", columns, rows, class_="open")
+    return tag("div", title, settled_by, rules, class_="left-open")
+
+
+def _against(finding: Finding) -> str:
+    return f"{value_text(finding)}; limit {limit_text(finding)}" if finding.limit is not None else ""
 
 
 def _group(grade: Grade, found: list[Finding], *, level: int, id: str) -> Markup:
@@ -63,12 +85,15 @@ def _finding(finding: Finding, *, level: int, id: str) -> Markup:
 def _contributions(finding: Finding) -> Markup:
     return table(f"What makes up the value of {one_line(finding.rule_id)}",
                  ["ingredient", ("part", "number"), "where"],
-                 [[one_line(part.ingredient), _amount(part), one_line(part.place)]
-                  for part in finding.contributions])
+                 [[one_line(part.ingredient), _amount(part, at_least=finding.answer == "cannot_tell"),
+                   one_line(part.place)] for part in finding.contributions])
 
 
-def _amount(part: Contribution) -> str:
-    return "unknown" if part.value is None else with_unit(plain(part.value), part.unit)
+def _amount(part: Contribution, *, at_least: bool) -> str:
+    """A part's amount; where the whole could not be told it is what is known of it, so the least."""
+    if part.value is None:
+        return "unknown"
+    return ("at least " if at_least else "") + with_unit(plain(part.value), part.unit)
 
 
 def _unknown(unknown: Unknown, *, level: int) -> Markup:

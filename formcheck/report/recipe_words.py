@@ -18,6 +18,8 @@ def figure_text(figure: Figure) -> str:
     text = f"({text})" if "±" in text and figure.unit == "%" else text
     text = with_unit(text, figure.unit)
     bounds = "" if figure.sd else interval(figure.low, figure.high)
+    if figure.low is not None and figure.high is not None and plain(figure.low) == plain(figure.high):
+        bounds = ""  # a range narrower than the digits shown
     return f"{text} ({bounds})" if bounds else text
 
 

@@ -49,7 +49,7 @@ def colour_rows(shade: Shade) -> list[tuple[Swatch, list[str]]]:
 
 def shade_rows(shade: Shade) -> list[tuple[str, str]]:
     """Label and text of what is said of the shade beside its coordinates."""
-    contrast = "" if shade.contrast_ratio is None else plain(shade.contrast_ratio)
+    contrast = "" if shade.contrast_ratio is None else f"{shade.contrast_ratio:.3f}"
     drawn_in = [row[0] for swatch, row in colour_rows(shade) if not swatch.in_gamut]
     rows = [
         ("layer", one_line(shade.geometry)),

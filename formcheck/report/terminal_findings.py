@@ -6,14 +6,16 @@ from rich.console import Console
 from rich.text import Text
 
 from formcheck.check.record import Check, Finding, Grade, Unknown
-from formcheck.report.finding_words import facts
+from formcheck.report.finding_words import by_what_would_settle, facts, limit_text, value_text
 from formcheck.report.terminal_parts import GRADE_STYLES, heading, labelled, paragraph
 from formcheck.report.words import (
     GRADE_MARKS,
-    GRADE_MEANINGS,
     NOTHING_FOUND,
+    NOTHING_TO_NAME,
     by_grade,
+    cited_text,
     clean,
+    count,
     one_line,
     rules_text,
     untold_findings,
@@ -40,21 +42,40 @@ def show_finding(console: Console, finding: Finding, grade: Grade) -> None:
     console.print(line)
     paragraph(console, one_line(finding.title), style="bold")
     paragraph(console, one_line(finding.said))
-    labelled(console, facts(finding), width=LABEL_WIDTH)
+    labelled(console, facts(finding, brief=True), width=LABEL_WIDTH)
 
 
 def show_untold(console: Console, check: Check) -> None:
-    """What formcheck could not tell, and the datum that would settle each."""
+    """What formcheck could not tell: first what its own reckoning lacks, then the rules left open."""
     untold = untold_findings(check)
     if not untold and not check.unknowns:
         return
-    heading(console, "Could not be told", GRADE_MEANINGS["unknown"] if not check.unknowns else "")
-    for finding in untold:
-        show_finding(console, finding, "unknown")
-    if check.unknowns:
-        console.print()
+    heading(console, "Could not be told")
     for unknown in check.unknowns:
         show_unknown(console, unknown)
+    for needed, found in by_what_would_settle(untold):
+        show_open(console, needed, found)
+    if untold:
+        console.print()
+        paragraph(console, "the whole of each: --page FILE or --json; the rule: formcheck why RULE", indent=0)
+
+
+def show_open(console: Console, needed: list[str], found: list[Finding]) -> None:
+    """The rules that the same data would settle, three lines or so for each."""
+    console.print()
+    title = f"{GRADE_MARKS['unknown']} {count(len(found), 'rule')} would be settled by"
+    console.print(Text(title, style="bold"))
+    labelled(console, [("-", one) for one in needed or [NOTHING_TO_NAME]])
+    for finding in found:
+        paragraph(console, f"{one_line(finding.rule_id)}  {one_line(finding.place)}".rstrip(), indent=4)
+        paragraph(console, open_text(finding), indent=6)
+
+
+def open_text(finding: Finding) -> str:
+    """Title, value against limit, and source, in one sentence."""
+    against = f"{value_text(finding)}, limit {limit_text(finding)}" if finding.limit is not None else ""
+    source = cited_text(finding.source) if finding.source else ""
+    return "; ".join(part for part in (one_line(finding.title), against, source) if part)
 
 
 def show_unknown(console: Console, unknown: Unknown) -> None:

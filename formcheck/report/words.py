@@ -10,7 +10,7 @@ from collections.abc import Iterable
 from datetime import date
 
 from formcheck.check.record import GRADES, Check, Cited, Finding, Grade, Swatch
-from formcheck.report.numbers import plain
+from formcheck.report.numbers import MINUS, plain
 
 GRADE_MARKS: dict[Grade, str] = {"stop": "■", "hold": "◆", "care": "▲", "note": "●", "unknown": "?"}
 GRADE_MEANINGS: dict[Grade, str] = {
@@ -23,11 +23,14 @@ GRADE_MEANINGS: dict[Grade, str] = {
 ANSWER_WORDS = {"within": "within", "exceeds": "exceeds", "cannot_tell": "cannot tell", "applies": "applies"}
 NOTHING_FOUND = ("No rule that was applied has anything to say. That is not a clearance: what could not be "
                  "told is listed, and what no rule asks nobody checked.")
+NOTHING_TO_NAME = "nothing that formcheck could name"
 NOWHERE_SOLD = "not stated, so no jurisdiction's limits were asked"
+UNITS_IN_FRONT = {"pH", "ΔE00"}
 FROM_MEMORY = "from memory, not confirmed"
 UNIT_WORDS = {
     "1": "", "fraction": "", "um": "µm", "um2": "µm²", "g/cm3": "g/cm³", "g/m2": "g/m²", "mg/m3": "mg/m³",
     "m2/L": "m²/L", "m2/l": "m²/L", "degC": "°C", "deg C": "°C", "deg": "°", "l/(mol cm)": "L/(mol cm)",
+    "DE00": "ΔE00",
 }
 # Control characters, halves of surrogate pairs, and the marks that turn the direction of writing:
 # each could make a terminal obey, a file unreadable or a line read otherwise than it is.
@@ -60,7 +63,12 @@ def unit_text(unit: str) -> str:
 
 
 def with_unit(number: str, unit: str) -> str:
-    return f"{number} {unit_text(unit)}".rstrip()
+    """`12 g/L`; but `pH 8.4` and `ΔE00 2`, as the field writes them. `unknown` stays in front."""
+    text = unit_text(unit)
+    if text not in UNITS_IN_FRONT:
+        return f"{number} {text}".rstrip()
+    unknown, comma, bounds = number.rpartition(", ")
+    return f"{unknown}{comma}{text} {bounds}" if bounds[:1].isdigit() or bounds[:1] == MINUS else number
 
 
 def day_text(day: date) -> str:

@@ -9,9 +9,10 @@ import pytest
 from rich.cells import cell_len
 from rich.console import Console
 
+from formcheck.check.record import Contribution
 from formcheck.report.finding_words import facts
 from formcheck.report.terminal import show_check, show_checks
-from formcheck.report.words import all_sources
+from formcheck.report.words import all_sources, cited_text, with_unit
 from tests.report.sample_check import bare_check, hostile_check, sample_check
 
 ESCAPE = "\x1b"
@@ -59,15 +60,55 @@ def test_no_line_is_wider_than_the_terminal(width):
 def test_every_finding_is_there_with_all_that_it_says():
     text = printed(sample_check(), width=400)
     for finding in sample_check().findings:
-        for said in (finding.grade, finding.rule_id, finding.title, finding.said, finding.source.cite,
-                     *(fact for _, fact in facts(finding))):
-            assert said in text
+        assert all(said in text for said in (finding.rule_id, finding.title, finding.place))
+        assert cited_text(finding.source) in text
+        if finding.grade != "unknown":
+            assert f"{finding.grade}  {finding.rule_id}" in text and finding.said in text
+            assert all(fact in text for _, fact in facts(finding, brief=True))
+
+
+def test_rules_left_open_stand_under_the_data_that_would_settle_most():
+    check = sample_check()
+    (untold,) = [one for one in check.findings if one.grade == "unknown"]
+    several = [untold.model_copy(update={"rule_id": f"demo-{n}", "would_settle": [f"datum {n > 0}"]})
+               for n in range(4)]
+    text = printed(check.model_copy(update={"findings": several}))
+    places = [text.index(word) for word in ("3 rules would be settled", "datum True", "demo-1", "demo-3",
+                                            "1 rule would be settled", "datum False", "demo-0")]
+    assert places == sorted(places)
+
+
+def test_parts_that_add_nothing_are_left_to_the_page():
+    (finding,) = [one for one in sample_check().findings if one.grade == "stop"]
+    nought = Contribution(ingredient="water", value=0.0, unit="mg/kg", place="sea_blue.yaml:15:5")
+    finding = finding.model_copy(update={"contributions": [*finding.contributions, nought]})
+    brief, whole = dict(facts(finding, brief=True)), dict(facts(finding))
+    assert brief["parts"] == "chrome_yellow_demo 640 mg/kg; harbour_blue_paste unknown"
+    assert "water 0 mg/kg (sea_blue.yaml:15:5)" in whole["parts"]
+
+
+def test_ph_and_difference_stand_before_their_numbers():
+    facts_of = {one.rule_id: dict(facts(one)) for one in sample_check().findings}
+    assert facts_of["DEMO-PH-WINDOW-BLUE"]["value"] == "pH 10.02"
+    assert with_unit("unknown, 8.2 to 8.6", "pH") == "unknown, pH 8.2 to 8.6"
+    assert with_unit("9.1", "DE00") == "ΔE00 9.1"
+    assert with_unit("unknown", "pH") == "unknown"
+
+
+def test_a_caution_has_no_limit_and_law_that_holds_anywhere_is_not_named():
+    facts_of = {one.rule_id: dict(facts(one)) for one in sample_check().findings}
+    assert "limit" not in facts_of["DEMO-KEEP-COOL"] and "law of" not in facts_of["DEMO-KEEP-COOL"]
+    (stop,) = [one for one in sample_check().findings if one.grade == "stop"]
+    anywhere = stop.model_copy(update={"jurisdiction": "any"})
+    assert dict(facts(anywhere))["limit"] == "90 mg/kg, in force from 2024-01-01"
+    bare = stop.model_copy(update={"limit": None})
+    assert dict(facts(bare))["law of"] == "XX, in force from 2024-01-01"
 
 
 def test_findings_stand_by_grade_and_the_untold_after_them():
     text = printed(sample_check())
     places = [text.index(word) for word in ("■ stop", "◆ hold", "▲ care", "● note", "Could not be told",
-                                            "? unknown", "formcheck does not judge")]
+                                            "would be settled by", "formcheck does not judge")]
     assert places == sorted(places)
 
 
