@@ -69,16 +69,22 @@ def resolve(lines: Lines, *, kinds: Sequence[UnitKind] | None = None,
     lines = lines if kinds is None else replace(lines, kinds=tuple(kinds))
     values = lines.values[None, :] if values is None else values
     checks.refuse_impossible(lines, values)
-    present = values > 0
-    if (present == present[0]).all():
-        patterns, of_recipe = present[:1], np.zeros(len(values), dtype=np.intp)
-    else:
-        patterns, of_recipe = np.unique(present, axis=0, return_inverse=True)
     groups = []
-    for n, pattern in enumerate(patterns):
-        rows = np.flatnonzero(of_recipe.reshape(-1) == n)
-        groups.append((rows, pattern, _resolve_present(lines.only(pattern), values[rows][:, pattern])))
+    for rows, present in _by_lines_present(values > 0):
+        groups.append((rows, present, _resolve_present(lines.only(present), values[rows][:, present])))
     return _gathered(groups, shape=values.shape)
+
+
+def _by_lines_present(present: NDArray[np.bool_]) -> list[tuple[NDArray[np.intp], NDArray[np.bool_]]]:
+    """Recipes (R, L) grouped by the lines of which they hold anything: rows and pattern of each group."""
+    groups = [(np.arange(len(present)), present[0])]
+    for line in np.flatnonzero((present != present[0]).any(axis=0)):  # few lines come and go in a sweep
+        split = []
+        for rows, _ in groups:
+            has = present[rows, line]
+            split += [(some, present[some[0]]) for some in (rows[has], rows[~has]) if len(some)]
+        groups = split
+    return groups
 
 
 Group = tuple[NDArray[np.intp], NDArray[np.bool_], Resolved]
