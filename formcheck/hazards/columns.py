@@ -93,7 +93,7 @@ def _row_of_each(quantity: RuleQuantity, selector: Selector, materials: Material
     anything = np.array([_unidentified(selector, material, matcher) for material in materials])
     rows = []
     for shares, record in _substances(materials, matcher).values():
-        pair = matcher.own(selector, record, delegates=False, content=True)
+        pair = matcher.of_pure(selector, record, content=True)
         if pair[1] > 0:
             surely, at_most = _own_limits(quantity, selector, record, limit=limit)
             apart = pair[1] * shares[1] if is_identified(record) else 0.0  # else counted in `anything`
@@ -124,7 +124,7 @@ def _unidentified(selector: Selector, material: Material, matcher: Matcher) -> f
         if one.material is None:
             total += one.high
         elif not is_identified(one.material):
-            total += one.high * matcher.own(selector, one.material, delegates=False, content=True)[1]
+            total += one.high * matcher.of_pure(selector, one.material, content=True)[1]
     if parts.undeclared > 0:
         total += parts.undeclared * matcher.of_undeclared(selector, material, content=True)[1]
     return min(total, matcher.cap(selector, material) if material.composition else 1.0)

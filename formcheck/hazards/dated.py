@@ -1,11 +1,9 @@
 """Days: limits, windows and citations that hold from one day to another."""
 
-from __future__ import annotations
-
 from collections.abc import Sequence
 from datetime import date
 from itertools import pairwise
-from typing import Annotated, TypeVar
+from typing import Annotated, Self, TypeVar
 
 from pydantic import Field, model_validator
 
@@ -31,7 +29,7 @@ class DatedWindow(Strict):
     source: str
 
     @model_validator(mode="after")
-    def _has_an_end(self) -> DatedWindow:
+    def _has_an_end(self) -> Self:
         if self.low is None and self.high is None:
             raise wrong("a window without ends", "`low`, `high` or both")
         if self.low is not None and self.high is not None and not self.low < self.high:

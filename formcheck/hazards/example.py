@@ -1,8 +1,6 @@
 """The examples a rule carries: small mixtures with the answer each must get."""
 
-from __future__ import annotations
-
-from typing import Annotated, Literal
+from typing import Annotated, Literal, Self
 
 from pydantic import Field, model_validator
 
@@ -40,7 +38,7 @@ class ExampleIngredient(Strict):
     unknown: list[Facet] = Field(default_factory=list)
 
     @model_validator(mode="after")
-    def _has_an_amount(self) -> ExampleIngredient:
+    def _has_an_amount(self) -> Self:
         if (self.percent is None) != ("percent" in self.unknown):
             raise wrong("an ingredient without an amount, or with one said to be unknown",
                         "`percent: ...`, or `unknown: [percent]`")

@@ -6,18 +6,22 @@ fraction: the most of the matching substances that a product can hold without it
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 from formcheck.hazards.mixture import Knowledge
 from formcheck.hazards.selector import Selector
 from formcheck.hazards.vocabulary import Vocabulary
-from formcheck.materials.record import HazardEntry, Material, name_key
+from formcheck.materials.record import HazardEntry, Material, MaterialKind, name_key
 
 Pair = tuple[float, float]
 NO: Pair = (0.0, 0.0)
 YES: Pair = (1.0, 1.0)
 UNKNOWN: Pair = (0.0, 1.0)
 
+ANYTHING_KINDS = ("dispersion", "additive")  # products by trade: nothing is ruled out by their kind
+PURE_KINDS = ("water", "pigment", "dye", "indicator", "extender", "salt", "mordant", "metal_powder")
+DRY_FORMS = ("powder", "granules", "flake", "crystals", "gas")
 COLOURANT_KINDS = ("pigment", "dye", "indicator", "dispersion", "additive")
 
 
@@ -30,7 +34,9 @@ class Matcher:
 
     def presence(self, selector: Selector, material: Material) -> Pair:
         """Whether the ingredient, or anything in it, agrees."""
-        own = self.own(selector, material, delegates=bool(material.composition), content=False)
+        if not material.composition:
+            return self.of_pure(selector, material, content=False)
+        own = self.own(selector, material, delegates=True, content=False)
         return _any([own, *(pair for _, _, pair in self._inside(selector, material, content=False))])
 
     def as_handled(self, selector: Selector, material: Material) -> Pair:
@@ -42,7 +48,7 @@ class Matcher:
     def content(self, selector: Selector, material: Material) -> Pair:
         """Mass fraction of the ingredient made of what agrees."""
         if not material.composition:
-            return self.own(selector, material, delegates=False, content=True)
+            return self.of_pure(selector, material, content=True)
         inside = self._inside(selector, material, content=True)
         low = sum(least * pair[0] for least, _, pair in inside)
         high = min(1.0, sum(most * pair[1] for _, most, pair in inside))
@@ -54,22 +60,25 @@ class Matcher:
     def _inside(self, selector: Selector, material: Material, *, content: bool
                 ) -> list[tuple[float, float, Pair]]:
         """Least and largest mass fraction of each constituent, and of what is undeclared, with its pair."""
-        if not material.composition:
-            return []
         parts = self.knowledge.composition(material)
-        inside = [(one.low, one.high, self._of_constituent(selector, one.material, content=content))
+        inside = [(one.low, one.high, self.of_constituent(selector, one.material, content=content))
                   for one in parts.constituents]
         if parts.undeclared > 0:
             pair = self.of_undeclared(selector, material, content=content)
             inside.append((parts.undeclared, parts.undeclared, pair))
         return inside
 
-    def _of_constituent(self, selector: Selector, material: Material | None, *, content: bool) -> Pair:
+    def of_constituent(self, selector: Selector, material: Material | None, *, content: bool) -> Pair:
         if selector.physical_form:
             return NO  # what lies inside a product is not handled in its own form
-        if material is None:
-            return UNKNOWN
-        return self.own(selector, material, delegates=False, content=content)
+        return UNKNOWN if material is None else self.of_pure(selector, material, content=content)
+
+    def of_pure(self, selector: Selector, material: Material, *, content: bool) -> Pair:
+        """A material without declared parts; one that may be a mixture may hold anything besides."""
+        own = self.own(selector, material, delegates=False, content=content)
+        if not may_be_mixture(material):
+            return own
+        return _any([own, self.of_undeclared(selector, material, content=content)])
 
     def of_undeclared(self, selector: Selector, material: Material, *, content: bool) -> Pair:
         """What a record leaves unnamed may be anything that the record as a whole does not rule out."""
@@ -83,33 +92,48 @@ class Matcher:
 
     def own(self, selector: Selector, material: Material, *, delegates: bool, content: bool) -> Pair:
         """By the record alone. `delegates`: its parts are declared and speak for what it does not say."""
-        unknown = NO if delegates else UNKNOWN
-        pairs = [pair for pair in (
-            self._group(selector, material, unknown), _kind(selector, material),
-            _charge(selector, material, unknown), _cas(selector, material, unknown),
-            _ci_name(selector, material, unknown), _hazards(selector, material, unknown, content),
-            _physical_form(selector, material),
-            _any([self.own(one, material, delegates=delegates, content=content) for one in selector.any_of])
-            if selector.any_of else None,
-        ) if pair is not None]
-        low, high = min(p[0] for p in pairs), min(p[1] for p in pairs)
+        low = high = 1.0
+        for pair in self._facets(selector, material, delegates=delegates, content=content):
+            low, high = min(low, pair[0]), min(high, pair[1])
+            if high == 0:
+                return NO
         if low < high:
             high = self._narrowed(selector, material, high, content=content)
         return low, high
 
-    def _group(self, selector: Selector, material: Material, unknown: Pair) -> Pair | None:
-        if not selector.group:
-            return None
+    def _facets(self, selector: Selector, material: Material, *, delegates: bool, content: bool
+                ) -> Iterator[Pair]:
+        """The pair of each facet the selector names, the quick ones first."""
+        unknown = NO if delegates else UNKNOWN
+        if selector.kind:
+            yield YES if material.kind in selector.kind else NO
+        if selector.group:
+            yield self._group(selector, material, unknown)
+        if selector.charge:
+            yield _charge(selector, material, unknown)
+        if selector.cas:
+            yield _cas(selector, material, unknown)
+        if selector.ci_name:
+            yield _ci_name(selector, material, unknown)
+        if selector.hazard_class or selector.hazard_code:
+            yield _hazards(selector, material, unknown, content)
+        if selector.physical_form:
+            yield _physical_form(selector, material)
+        if selector.any_of:
+            yield _any([self.own(one, material, delegates=delegates, content=content)
+                        for one in selector.any_of])
+
+    def _group(self, selector: Selector, material: Material, unknown: Pair) -> Pair:
         if set(selector.group) & set(material.groups):
             return YES
         if families_are_told(material) or unknown == NO:
             return NO
         families = [self.words.groups[name] for name in selector.group if name in self.words.groups]
-        return unknown if any(not one.kinds or material.kind in one.kinds for one in families) else NO
+        return unknown if any(_may_hide_in(material, one.kinds) for one in families) else NO
 
     def _narrowed(self, selector: Selector, material: Material, high: float, *, content: bool) -> float:
         """The upper bound of an unknown, where kind, element or classification rule the match out."""
-        if selector.hides_in and material.kind not in selector.hides_in:
+        if not _may_hide_in(material, selector.hides_in):
             return 0.0
         if selector.shown_by_element and self._has_none_of(material, selector.shown_by_element):
             return 0.0
@@ -135,6 +159,10 @@ class Matcher:
         return self.knowledge.element_bounds(material, symbol)[1] == 0
 
 
+def _may_hide_in(material: Material, kinds: list[MaterialKind]) -> bool:
+    return not kinds or material.kind in kinds or material.kind in ANYTHING_KINDS
+
+
 def most_volatile(material: Material) -> float:
     """The largest mass fraction that can leave the film; 1 where the record does not tell."""
     stays = material.nonvolatile_fraction
@@ -147,6 +175,16 @@ def is_identified(material: Material) -> bool:
     """Whether the record says which substance it is: by CAS number, formula or Colour Index, or as water."""
     return bool(material.cas or material.formula or material.ci_generic_name
                 or material.ci_constitution_number or material.kind == "water")
+
+
+def may_be_mixture(material: Material) -> bool:
+    """Whether a record without declared parts may be of a mixture: not identified, and neither dry nor of a
+    kind that is one substance."""
+    if is_identified(material):
+        return False
+    if material.kind in ANYTHING_KINDS:
+        return True
+    return material.kind not in PURE_KINDS and material.physical_form not in DRY_FORMS
 
 
 def families_are_told(material: Material) -> bool:
@@ -168,40 +206,26 @@ def _any(pairs: list[Pair]) -> Pair:
     return max(p[0] for p in pairs), max(p[1] for p in pairs)
 
 
-def _kind(selector: Selector, material: Material) -> Pair | None:
-    if not selector.kind:
-        return None
-    return YES if material.kind in selector.kind else NO
-
-
-def _charge(selector: Selector, material: Material, unknown: Pair) -> Pair | None:
-    if not selector.charge:
-        return None
+def _charge(selector: Selector, material: Material, unknown: Pair) -> Pair:
     if material.charge is None:
         return unknown
     return YES if material.charge.value in selector.charge else NO
 
 
-def _cas(selector: Selector, material: Material, unknown: Pair) -> Pair | None:
-    if not selector.cas:
-        return None
+def _cas(selector: Selector, material: Material, unknown: Pair) -> Pair:
     if material.cas is None:
         return NO if material.kind == "water" else unknown
     return YES if material.cas.value in selector.cas else NO
 
 
-def _ci_name(selector: Selector, material: Material, unknown: Pair) -> Pair | None:
-    if not selector.ci_name:
-        return None
+def _ci_name(selector: Selector, material: Material, unknown: Pair) -> Pair:
     if material.ci_generic_name is None:
         return unknown if material.kind in COLOURANT_KINDS else NO
     wanted = {name_key(name) for name in selector.ci_name}
     return YES if name_key(material.ci_generic_name.value) in wanted else NO
 
 
-def _hazards(selector: Selector, material: Material, unknown: Pair, content: bool) -> Pair | None:
-    if not (selector.hazard_class or selector.hazard_code):
-        return None
+def _hazards(selector: Selector, material: Material, unknown: Pair, content: bool) -> Pair:
     if material.hazards is None:
         return NO if material.kind == "water" else unknown
     codes = tuple(selector.hazard_code)
@@ -213,9 +237,7 @@ def _hazards(selector: Selector, material: Material, unknown: Pair, content: boo
     return NO if is_identified(material) or not content else unknown
 
 
-def _physical_form(selector: Selector, material: Material) -> Pair | None:
-    if not selector.physical_form:
-        return None
+def _physical_form(selector: Selector, material: Material) -> Pair:
     if material.physical_form is None:
         return NO if material.kind == "water" else UNKNOWN
     return YES if material.physical_form in selector.physical_form else NO

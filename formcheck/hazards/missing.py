@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from formcheck.hazards.matching import UNKNOWN, Matcher, is_identified
+from formcheck.hazards.matching import Matcher, is_identified
 from formcheck.hazards.selector import Selector
 from formcheck.materials.record import Material
 
@@ -35,8 +35,7 @@ def _missing_inside(matcher: Matcher, selector: Selector, material: Material, *,
     for one in parts.constituents:
         if one.material is None:
             found.append(f"a record of the part {one.name!r}")
-        elif not selector.physical_form and _open(matcher.own(
-                selector, one.material, delegates=False, content=content)):
+        elif _open(matcher.of_constituent(selector, one.material, content=content)):
             data = _missing_of_record(selector, one.material, content=content)
             found += [f"{datum} of the part {one.material.names[0]!r}" for datum in data]
     if parts.undeclared > 0 and not selector.physical_form:
@@ -69,4 +68,4 @@ def _missing_of_record(selector: Selector, material: Material, *, content: bool)
 
 
 def _open(pair: tuple[float, float]) -> bool:
-    return pair[0] < pair[1] or pair == UNKNOWN
+    return pair[0] < pair[1]

@@ -3,9 +3,7 @@
 One model for each kind of rule. `load_book` reads files into them; nothing here judges.
 """
 
-from __future__ import annotations
-
-from typing import Annotated, Literal
+from typing import Annotated, Literal, Self
 
 from pydantic import Field, model_validator
 
@@ -68,7 +66,7 @@ class RuleBase(Strict):
     examples: Annotated[list[Example], Field(min_length=2)]
 
     @model_validator(mode="after")
-    def _every_source_is_cited_once_and_listed(self) -> RuleBase:
+    def _every_source_is_cited_once_and_listed(self) -> Self:
         cited, listed = set(self.source_keys()), set(self.sources)
         if cited - listed:
             raise wrong(f"the source {min(cited - listed)!r}, which `sources` does not list",
@@ -79,7 +77,7 @@ class RuleBase(Strict):
         return self
 
     @model_validator(mode="after")
-    def _examples_show_both_answers(self) -> RuleBase:
+    def _examples_show_both_answers(self) -> Self:
         expected = {example.expect for example in self.examples}
         if not expected & self.tripped_as():
             raise wrong("no example that trips the rule", "one that expects exceeds or applies")
@@ -88,7 +86,7 @@ class RuleBase(Strict):
         return self
 
     @model_validator(mode="after")
-    def _unknowns_of_law_hold(self) -> RuleBase:
+    def _unknowns_of_law_hold(self) -> Self:
         of_law = any(source.kind == "law" for source in self.sources.values())
         halts = self.grade.exceeds in ("stop", "hold")
         if of_law and halts and self.grade.cannot_tell not in ("hold", "stop"):
@@ -126,7 +124,7 @@ class LimitOnSum(RuleBase):
         return [one.source for one in self.limit] + ([specific.source] if specific else [])
 
     @model_validator(mode="after")
-    def _is_a_limit(self) -> LimitOnSum:
+    def _is_a_limit(self) -> Self:
         _refuse_grades(self, needs="exceeds", other="applies")
         refuse_disorder(self.limit)
         if self.comparison == "at_or_above" and any(one.value == 0 for one in self.limit):
@@ -156,7 +154,7 @@ class PhWindow(RuleBase):
         return [one.source for one in self.window] + ([self.source] if self.source else [])
 
     @model_validator(mode="after")
-    def _is_a_window(self) -> PhWindow:
+    def _is_a_window(self) -> Self:
         _refuse_grades(self, needs="exceeds", other="applies")
         if self.from_records == bool(self.window):
             raise wrong("a window both in the rule and from the records, or neither",
@@ -197,7 +195,7 @@ class MustNotMeet(RuleBase):
         return [self.in_force.source]
 
     @model_validator(mode="after")
-    def _is_a_pair(self) -> MustNotMeet:
+    def _is_a_pair(self) -> Self:
         _refuse_grades(self, needs="applies", other="exceeds")
         return self
 
@@ -214,7 +212,7 @@ class Caution(RuleBase):
         return [self.in_force.source]
 
     @model_validator(mode="after")
-    def _is_a_caution(self) -> Caution:
+    def _is_a_caution(self) -> Self:
         _refuse_grades(self, needs="applies", other="exceeds")
         return self
 

@@ -1,8 +1,6 @@
 """What a rule says of the ingredients it means: families, kinds, charges, numbers, hazard classes."""
 
-from __future__ import annotations
-
-from typing import Annotated
+from typing import Annotated, Self
 
 from pydantic import Field, model_validator
 
@@ -31,14 +29,14 @@ class Selector(Strict):
     hazard_class: list[str] = Field(default_factory=list)
     hazard_code: list[HazardCode] = Field(default_factory=list)
     physical_form: list[PhysicalForm] = Field(default_factory=list)
-    any_of: list[Selector] = Field(default_factory=list)
+    any_of: list["Selector"] = Field(default_factory=list)
     hides_in: list[MaterialKind] = Field(default_factory=list)
     shown_by_class: list[str] = Field(default_factory=list)
     shown_by_element: str | None = None
     volatile: bool = False
 
     @model_validator(mode="after")
-    def _selects_something(self) -> Selector:
+    def _selects_something(self) -> Self:
         if not any(getattr(self, facet) for facet in FACETS):
             raise wrong("a selector that names nothing", f"one of {', '.join(FACETS)}")
         return self

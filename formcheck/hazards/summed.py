@@ -1,8 +1,6 @@
 """What a limit sums: elements, shares of ingredients, VOC; on which basis and in which unit."""
 
-from __future__ import annotations
-
-from typing import Annotated, Literal
+from typing import Annotated, Literal, Self
 
 from pydantic import Field, model_validator
 
@@ -36,7 +34,7 @@ class Term(Strict):
     only_the: str = ""
 
     @model_validator(mode="after")
-    def _is_one_thing(self) -> Term:
+    def _is_one_thing(self) -> Self:
         if sum(x is not None for x in (self.element, self.share, self.voc)) != 1:
             raise wrong("a term that is not one thing", "one of `element`, `share`, `voc`")
         if not self.times:
@@ -67,7 +65,7 @@ class Summed(Strict):
     unit: str
 
     @model_validator(mode="after")
-    def _unit_fits_basis(self) -> Summed:
+    def _unit_fits_basis(self) -> Self:
         if self.unit not in UNITS:
             raise wrong(f"the unit {self.unit!r}", f"one of {', '.join(UNITS)}")
         if self.basis not in UNITS[self.unit][0]:
@@ -95,7 +93,7 @@ class RuleQuantity(Summed):
     specific_limits: SpecificLimits | None = None
 
     @model_validator(mode="after")
-    def _each_is_a_share(self) -> RuleQuantity:
+    def _each_is_a_share(self) -> Self:
         if self.each and (self.of[0].times != 1 or len(self.of) > 1 or self.of[0].share is None):
             raise wrong("`each` over something other than one `share`", "one term with `share`")
         if self.specific_limits and (len(self.of) > 1 or self.of[0].share is None or self.basis != "mixture"):

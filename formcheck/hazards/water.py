@@ -5,12 +5,11 @@ from __future__ import annotations
 import numpy as np
 
 from formcheck.hazards.columns import Materials
-from formcheck.hazards.matching import NO, UNKNOWN, YES, Matcher, Pair
+from formcheck.hazards.matching import DRY_FORMS, NO, UNKNOWN, YES, Matcher, Pair
 from formcheck.hazards.mixture import MixtureFacts
 from formcheck.hazards.verdict import Kleene
 from formcheck.materials.record import Material
 
-DRY_FORMS = ("powder", "granules", "flake", "crystals", "gas")
 WET_FORMS = ("solution", "paste")
 DRY_KINDS = ("pigment", "extender", "metal_powder")  # unless their form says else
 WATER_FREE_KINDS = ("solvent", "plasticiser")
