@@ -235,13 +235,10 @@ def _real_path(data: Any, loc: FieldPath) -> FieldPath:
     """pydantic's loc without the steps it adds for alternatives; ends at what the file really holds."""
     path: list[str | int] = []
     for step in loc:
-        if isinstance(data, dict) and step in data:
+        inside_list = isinstance(data, list) and isinstance(step, int) and 0 <= step < len(data)
+        if inside_list or (isinstance(data, dict) and step in data):
             data = data[step]
-        elif isinstance(data, list) and isinstance(step, int) and 0 <= step < len(data):
-            data = data[step]
-        else:
-            continue
-        path.append(step)
+            path.append(step)
     return tuple(path)
 
 

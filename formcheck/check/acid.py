@@ -9,7 +9,7 @@ import numpy as np
 from formcheck.acid_base.forms import form_fractions
 from formcheck.acid_base.mixture_ph import mixture_ph
 from formcheck.acid_base.water_phase import water_phase
-from formcheck.check.parts import Parts, parts_of
+from formcheck.check.parts import Parts, parts_of, with_impure_rests
 from formcheck.check.record import Cited, DyeForms, Figure
 from formcheck.materials.record import Material
 from formcheck.materials.shelf import Shelf
@@ -47,6 +47,7 @@ def acid_state(batch: Batch, shelf: Shelf, r: int = 0) -> AcidState:
     """pH by measurement where there is one, else by charge balance, else unknown with the reason."""
     measured = batch.recipes[r].recipe.measured or Measured()
     parts = parts_of(shelf, batch.materials, kept_whole=lambda material: material.acid_base is not None)
+    parts = with_impure_rests(parts, batch, r)
     phase = water_phase(parts.materials, parts.fractions(batch.mass_fraction)[r:r + 1], names=parts.names)
     temperature_c = USUAL_TEMPERATURE_C if measured.temperature_c is None else measured.temperature_c
     found = mixture_ph(phase, temperature_c=temperature_c)

@@ -9,6 +9,7 @@ import numpy as np
 from formcheck.check.cited import cited_by
 from formcheck.check.parts import Parts
 from formcheck.check.record import ColourantBasis
+from formcheck.materials.elements import molar_mass_of
 from formcheck.materials.record import DyeForm, Material, SpectrumFile
 from formcheck.materials.shelf import Found, data_file
 from formcheck.spectra.bands import (
@@ -104,7 +105,7 @@ def _add_pigment(known: Colourants, found: Found, c: int) -> None:
 def _add_dye(known: Colourants, found: Found, c: int) -> None:
     material = found.material
     assert material.optical
-    if material.molar_mass_g_mol is None:
+    if molar_mass_of(material).value is None:
         known.missing[c] = f"no molar mass of {material.names[0]}, so its amount in moles is unknown"
         return
     for number, form in enumerate(material.optical.forms):
@@ -170,9 +171,9 @@ def _to_epsilon(material: Material, record: SpectrumFile) -> float | None:
     """What turns the file's values into L/(mol cm)."""
     if record.quantity == "epsilon_l_mol_cm":
         return 1.0
-    if material.molar_mass_g_mol is None:
+    molar_mass = molar_mass_of(material).value
+    if molar_mass is None:
         return None
-    molar_mass = material.molar_mass_g_mol.value
     if record.quantity == "absorptivity_l_g_cm":
         return molar_mass
     if record.concentration_g_l is None or record.path_length_cm is None:
@@ -181,8 +182,12 @@ def _to_epsilon(material: Material, record: SpectrumFile) -> float | None:
 
 
 def missing_reasons(known: Colourants, form_share: dict[int, np.ndarray | None]) -> list[str]:
-    """Why the shade cannot be told: colourants without optics, and forms without a spectrum that are there."""
+    """Why the shade cannot be told: colourants without optics, dyes whose forms have shares nobody knows, and
+    forms without a spectrum that are there."""
     reasons = list(known.missing.values())
+    absorbing = {one.constituent: one.name for one in known.absorbers}
+    reasons += [f"the share of each form of {name} is unknown, as the pH is" for c, name in absorbing.items()
+                if form_share.get(c) is None]
     for (c, number), reason in known.missing_forms.items():
         share = form_share.get(c)
         if share is None:

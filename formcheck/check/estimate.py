@@ -1,7 +1,5 @@
 """`formcheck estimate`: a dye described as electron boxes, to levels, bands, spectrum and swatch with its region."""
 
-from __future__ import annotations
-
 import re
 from collections.abc import Sequence
 from pathlib import Path
@@ -88,7 +86,7 @@ def estimate_boxes(words: Sequence[str], file: Path | None = None) -> Estimate:
                         "a measurement."])
 
 
-def _from_words(words: Sequence[str]) -> BoxFile:
+def _from_words(words: Sequence[str]) -> "BoxFile":
     boxes = "".join(f"\n      - {_box_from_words(text)}" for text in words)
     document: Document = parse_yaml(f"title: {' + '.join(' '.join(text.split()) for text in words)!r}\n"
                                     f"forms:\n  - name: dye\n    boxes:{boxes}\n", "--box")
@@ -104,7 +102,8 @@ def _box_from_words(text: str) -> str:
     shape = shape.lower()
     if (shape == "plate") != (other is not None):
         raise trouble("--box", repr(text[:60]), "two sides for a plate and one size for a chain or ring: " + EXPECTED)
-    sizes = {"chain": f"length_nm: {size}", "ring": f"circumference_nm: {size}", "plate": f"sides_nm: [{size}, {other}]"}
+    sizes = {"chain": f"length_nm: {size}", "ring": f"circumference_nm: {size}",
+             "plate": f"sides_nm: [{size}, {other}]"}
     extra = f", bond_alternation_ev: {alternation}" if alternation else ""
     return f"{{shape: {shape}, n_pi_electrons: {electrons}, {sizes[shape]}, count: {count or 1}{extra}}}"
 

@@ -10,6 +10,7 @@ from formcheck.recipe.batch import Batch
 from formcheck.recipe.read import WrittenRecipe
 
 PH_GAP = 0.5  # measured from computed: beyond it one of the two is not to be trusted
+DISSOLVED_KINDS = ("dye", "indicator", "salt")
 OWN = Cited(cite="formcheck's own reckoning", kind="computed")
 MAKER = "the maker, by a drawdown or a sample"
 
@@ -65,8 +66,8 @@ def _porous(written: WrittenRecipe, film: FilmState, r: int) -> Finding | None:
     return Finding(
         grade="note", rule_id="formcheck-porous-film", title="More pigment than the binder can wet", answer="applies",
         value=pvc.value[r] * 100, limit=cpvc.value[r] * 100, unit="%", basis="by volume of the dry film",
-        said=f"The pigment volume concentration is {pvc.value[r]:.0%}, the critical one {cpvc.value[r]:.0%}: air takes the "
-             "place of binder, which hides and scrubs off, and which the shade does not hold.",
+        said=f"The pigment volume concentration is {pvc.value[r]:.0%}, the critical one {cpvc.value[r]:.0%}: air takes "
+             "the place of binder, which hides and scrubs off, and which the shade does not hold.",
         what_to_do="Expect a matt, porous, lighter film than predicted; test scrub and adhesion.",
         who_decides=MAKER, source=Cited(cite="Asbeck & Van Loo, Ind. Eng. Chem. 41 (1949) 1470", kind="paper"),
         place=str(written.document.place(("ingredients",))))
@@ -78,7 +79,7 @@ def _beyond_solubility(batch: Batch, parts: Parts, r: int) -> list[Finding]:
     water = sum(fractions[c] for c, m in enumerate(parts.materials) if m is not None and m.kind == "water")
     found = []
     for c, material in enumerate(parts.materials):
-        if material is None or material.solubility_water_g_l is None or material.kind not in ("dye", "indicator", "salt"):
+        if material is None or material.kind not in DISSOLVED_KINDS or material.solubility_water_g_l is None:
             continue
         if not water > 0 or not fractions[c] > 0:
             continue
@@ -114,5 +115,5 @@ def unknowns_of(written: WrittenRecipe, batch: Batch, *, shade_reason: str, acid
 
 
 def _has_water(batch: Batch, r: int) -> bool:
-    return any(m.kind == "water" and not batch.mass_fraction[r, i] == 0 or m.composition
-               for i, m in enumerate(batch.materials))
+    present = batch.mass_fraction[r] != 0
+    return any(is_in and (m.kind == "water" or m.composition) for is_in, m in zip(present, batch.materials, strict=True))

@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from formcheck.materials.record import Material
 from formcheck.materials.shelf import Composition, Constituent, Found, Shelf, expand, find
+from formcheck.recipe.batch import Batch
 
 
 @dataclass(frozen=True)
@@ -68,3 +69,27 @@ def parts_of(shelf: Shelf, materials: Sequence[Material], *,
 def whole(material: Material) -> Composition:
     """A material as its own single constituent."""
     return Composition((Constituent(material.id, material, 1.0, 1.0, 1.0),), 0.0)
+
+
+def with_impure_rests(parts: Parts, batch: Batch, r: int = 0) -> Parts:
+    """The same where lines state a purity below 1: what is left of such an ingredient is a constituent of its own,
+    of which nothing is known."""
+    for i, material in enumerate(batch.materials):
+        rest = 1.0 - _purity(batch, i, r)
+        if rest > 0:
+            share = np.concatenate([parts.share, np.zeros((len(parts.share), 1))], axis=1)
+            share[i] *= 1.0 - rest
+            share[i, -1] = rest
+            parts = replace(parts, names=(*parts.names, f"rest of {material.names[0]}"), found=(*parts.found, None),
+                            share=share)
+    return parts
+
+
+def _purity(batch: Batch, i: int, r: int) -> float:
+    """Of one ingredient, by the mass of its lines; by their mean where a mass is unknown."""
+    lines = [(n, line) for n, line in enumerate(batch.lines[r]) if line.material == i]
+    purity = np.array([1.0 if line.purity is None else line.purity for _, line in lines])
+    mass = batch.line_mass_g[r, [n for n, _ in lines]]
+    if len(lines) == 0:
+        return 1.0
+    return float(purity @ mass / mass.sum() if mass.sum() > 0 else purity.mean())

@@ -4,8 +4,6 @@ Terminal, JSON, page and register all show this record and nothing else. `formch
 prints its JSON Schema; `version` rises when a field changes its meaning or goes.
 """
 
-from __future__ import annotations
-
 from datetime import date
 from typing import Literal
 
@@ -24,7 +22,7 @@ DEFERRAL = (
 
 
 class Part(BaseModel):
-    model_config = ConfigDict(extra="forbid")
+    model_config = ConfigDict(extra="forbid", defer_build=True)
 
 
 class Cited(Part):

@@ -3,8 +3,6 @@
 Terminal, JSON and page of `formcheck estimate` all show this record and nothing else.
 """
 
-from __future__ import annotations
-
 from typing import Literal
 
 from pydantic import Field

@@ -22,6 +22,7 @@ from formcheck.hazards.rule import RuleSource
 from formcheck.materials.record import Material
 from formcheck.materials.shelf import Shelf
 from formcheck.recipe.batch import Batch
+from formcheck.recipe.markets import markets_reached
 from formcheck.trouble import suggestion, trouble
 
 GRADE_ORDER = {"stop": 0, "hold": 1, "care": 2, "note": 3, "unknown": 4}
@@ -47,7 +48,7 @@ def mixture_facts(batch: Batch, parts: Parts, film: FilmState, acid: AcidState, 
         names=(*names, *(material.names[0] for material, _, _ in rests)),
         places=(*places, *(place for _, _, place in rests)),
         mass_fraction=fraction[None, :],
-        scopes=(Scope(recipe.what, tuple(recipe.use), tuple(recipe.sold_in), tuple(recipe.acts)),),
+        scopes=(Scope(recipe.what, tuple(recipe.use), markets_reached(recipe.sold_in), tuple(recipe.acts)),),
         nonvolatile_fraction=nonvolatile,
         ph=(np.array([acid.bounds[0]]), np.array([acid.bounds[1]])),
         voc_g_l={"ready_to_use": _bounds(film.voc_ready, r), "less_water": _bounds(film.voc_less_water, r)},

@@ -11,12 +11,12 @@ import numpy as np
 from formcheck import __version__
 from formcheck.check.acid import acid_state, dye_forms, form_shares, ph_figures
 from formcheck.check.own_findings import own_findings, unknowns_of
-from formcheck.check.parts import Parts, parts_of
+from formcheck.check.parts import Parts, parts_of, with_impure_rests
 from formcheck.check.record import Check, Cited, Finding, Line
 from formcheck.check.rules import GRADE_ORDER, findings_of, judged
 from formcheck.check.setting import viewing_of
 from formcheck.check.shade import shade_of
-from formcheck.check.volumes import FilmState, film_figures, film_state
+from formcheck.check.volumes import FilmState, dry_fraction_of_lines, film_figures, film_state
 from formcheck.hazards.book import Book, load_book
 from formcheck.recipe.batch import Batch, build_batch
 from formcheck.recipe.read import WrittenRecipe, read_recipe
@@ -39,13 +39,14 @@ def check_recipe(written: WrittenRecipe, *, as_of: date, book: Book, shelf_folde
     """Check a recipe that has been read."""
     batch = build_batch([written], shelf_folder=shelf_folder)
     shelf = batch.shelves[0]
-    parts = parts_of(shelf, batch.materials)
+    pure = parts_of(shelf, batch.materials)
+    parts = with_impure_rests(pure, batch)
     film = film_state(batch, parts, shelf)
     acid = acid_state(batch, shelf)
     viewing = viewing_of(written, parts, film)
     shares = form_shares(parts, ~(parts.fractions(batch.mass_fraction)[0] == 0), acid)
     shade, shade_reason, _ = shade_of(batch, parts, film=film, acid=acid, viewing=viewing, form_share=shares)
-    answers = judged(batch, parts, shelf, film=film, acid=acid, book=book, as_of=as_of)
+    answers = judged(batch, pure, shelf, film=film, acid=acid, book=book, as_of=as_of)
     findings = findings_of(answers) + own_findings(written, batch, parts, shade=shade, acid=acid, film=film)
     findings.sort(key=lambda finding: (GRADE_ORDER[finding.grade], finding.rule_id))
     measured = written.recipe.measured
@@ -67,12 +68,13 @@ def check_recipe(written: WrittenRecipe, *, as_of: date, book: Book, shelf_folde
 def _lines(batch: Batch, parts: Parts, film: FilmState, r: int = 0) -> list[Line]:
     lines = []
     total = batch.total_mass_g[r]
+    dry = dry_fraction_of_lines(batch, parts, film, r)
     for n, line in enumerate(batch.lines[r]):
         mass = batch.line_mass_g[r, n]
         found = batch.found[line.material]
         lines.append(Line(
             ingredient=line.name, material=found.material.id, written=line.written, mass_g=_known(mass),
-            mass_fraction=_known(mass / total), dry_volume_fraction=None, place=str(line.place),
+            mass_fraction=_known(mass / total), dry_volume_fraction=_known(dry[n]), place=str(line.place),
             record_from="the recipe" if found.where == "recipe" else found.where))
     return lines
 

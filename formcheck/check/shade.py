@@ -6,6 +6,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import ArrayLike
 
 from formcheck.check.acid import AcidState, shares_at
 from formcheck.check.colourants import WIDE_NM, Colourants, colourants_of, missing_reasons
@@ -27,6 +28,7 @@ from formcheck.colour.hiding import contrast_ratio
 from formcheck.colour.srgb import swatch
 from formcheck.colour.tristimulus import white_point, xyz
 from formcheck.colour.uncertainty import difference_spread, probability_within, propagate
+from formcheck.materials.elements import molar_mass_of
 from formcheck.recipe.batch import Batch
 from formcheck.spectra.grid import WAVELENGTH_NM
 
@@ -86,8 +88,7 @@ def _model(batch: Batch, parts: Parts, film: FilmState, acid: AcidState, viewing
            r: int) -> Model:
     optics = _optics(parts, known)
     columns = [line.material for line in batch.lines[r]]
-    purity = np.array([1.0 if line.purity is None else line.purity for line in batch.lines[r]])
-    share_of_line = parts.share[columns] * purity[:, None]
+    share_of_line = parts.share[columns]
     density = float(film.density_g_ml.value[r])
     inputs = _inputs(batch, viewing, known, acid, r)
     n_lines, n_abs, n_pig = len(columns), len(known.absorbers), len(known.pigments)
@@ -111,8 +112,9 @@ def _optics(parts: Parts, known: Colourants) -> Optics:
     molar_masses = []
     for one in known.absorbers:
         material = parts.materials[one.constituent]
-        assert material is not None and material.molar_mass_g_mol is not None
-        molar_masses.append(material.molar_mass_g_mol.value)
+        molar_mass = molar_mass_of(material).value if material is not None else None
+        assert molar_mass is not None
+        molar_masses.append(molar_mass)
     return Optics(
         wavelength_nm=WAVELENGTH_NM, wide_nm=WIDE_NM,
         absorber_constituent=np.array([one.constituent for one in known.absorbers], dtype=int),
@@ -127,23 +129,29 @@ def _optics(parts: Parts, known: Colourants) -> Optics:
 
 def _inputs(batch: Batch, viewing: Viewing, known: Colourants, acid: AcidState, r: int) -> Inputs:
     """Inputs in the order that `_model` takes them apart again."""
-    lines = batch.lines[r]
+    lines, absorbers, pigments = batch.lines[r], known.absorbers, known.pigments
     step = batch.recipes[r].recipe.balance_step_g
     weighing = 0.0 if step is None else step / np.sqrt(12.0) * WEIGHINGS
     mass = batch.line_mass_g[r, : len(lines)]
-    absorbers, pigments = known.absorbers, known.pigments
     spectra_of = [f"spectrum of {one.name}" for one in absorbers]
     optics_of = [f"K and S of {one.name}" for one in pigments]
-    ones_a, ones_p = np.ones(len(absorbers)), np.ones(len(pigments))
     pigment_sd = [one.relative_sd for one in pigments]
-    ph_sd = 0.0 if acid.ph is None else acid.ph_sd
-    value = [mass, ones_a, 0 * ones_a, 0 * ones_a, ones_p, ones_p, [viewing.wet_thickness_um], [7.0 if acid.ph is None else acid.ph]]
-    sd = [np.where(mass > 0, weighing, 0.0), [one.strength_sd for one in absorbers],
-          [one.lambda_sd_nm for one in absorbers], [1.0 * one.doubt.any() for one in absorbers], pigment_sd, pigment_sd, [viewing.thickness_sd_um], [ph_sd]]
-    lower = [0 * mass, LEAST_STRENGTH * ones_a, np.full(2 * len(absorbers), -np.inf), LEAST_STRENGTH * ones_p,
-             LEAST_STRENGTH * ones_p, [0.0], [-np.inf]]
-    label = (["weighing"] * len(lines) + spectra_of * 3 + optics_of * 2 + ["film thickness", "pH"])
-    return Inputs(*(np.concatenate([np.asarray(part, float) for part in parts]) for parts in (value, sd, lower)), label)
+    ph, ph_sd = (7.0, 0.0) if acid.ph is None else (acid.ph, acid.ph_sd)
+    # label, value, standard deviation, least value
+    groups: list[tuple[list[str], ArrayLike, ArrayLike, float]] = [
+        (["weighing"] * len(lines), mass, np.where(mass > 0, weighing, 0.0), 0.0),
+        (spectra_of, 1.0, [one.strength_sd for one in absorbers], LEAST_STRENGTH),
+        (spectra_of, 0.0, [one.lambda_sd_nm for one in absorbers], -np.inf),
+        (spectra_of, 0.0, [float(one.doubt.any()) for one in absorbers], -np.inf),
+        (optics_of, 1.0, pigment_sd, LEAST_STRENGTH),
+        (optics_of, 1.0, pigment_sd, LEAST_STRENGTH),
+        (["film thickness"], viewing.wet_thickness_um, viewing.thickness_sd_um, 0.0),
+        (["pH"], ph, ph_sd, -np.inf),
+    ]
+    value, sd, lower = (
+        np.concatenate([np.broadcast_to(np.asarray(group[n], dtype=float), len(group[0])) for group in groups])
+        for n in (1, 2, 3))
+    return Inputs(value, sd, lower, [label for group in groups for label in group[0]])
 
 
 def _absorber_shares(parts: Parts, known: Colourants, ph: np.ndarray) -> np.ndarray:

@@ -74,6 +74,16 @@ def nonvolatile_of(materials: tuple[Material, ...], parts: Parts) -> np.ndarray:
     return np.where(np.isnan(stated), reckoned, stated)
 
 
+def dry_fraction_of_lines(batch: Batch, parts: Parts, state: FilmState, r: int = 0) -> np.ndarray:
+    """Volume fraction of the dry film that each line leaves (L,), NaN where unknown; a constituent that several
+    lines bring is shared among them by mass."""
+    mass = batch.line_mass_g[r, : len(batch.lines[r])]
+    brought = mass[:, None] * parts.share[[line.material for line in batch.lines[r]]]
+    of_constituent = brought.sum(axis=0)
+    share = np.divide(brought, of_constituent, out=np.zeros_like(brought), where=of_constituent != 0)
+    return np.where(share != 0, share * state.dry_fraction[r], 0.0).sum(axis=1)
+
+
 def wet_film_um(film: Film, state: FilmState, r: int = 0) -> tuple[float | None, str]:
     """Wet thickness of the recipe's film, or None with the reason."""
     if film.wet is not None:
@@ -174,6 +184,9 @@ def _is_organic(material: Material | None, shelf: Shelf) -> float:
         return np.nan
     if material.kind == "water" or {"carbonate", "cyanide_complex"} & set(material.groups):
         return 0.0
+    made_of = material.elements.only if material.elements else None
+    if made_of and "C" in made_of:  # a closed list of elements, how much of each untold
+        return 1.0
     low, high, _ = element_bounds(shelf, material, "C")
     return 1.0 if low > 0 else 0.0 if high == 0 else np.nan
 

@@ -15,7 +15,7 @@ MG_KG = 1e-6
 # Made from ores and metals, so that no formula tells what they carry along (common practice): only an assay does.
 MINERAL_KINDS = ("pigment", "extender", "metal_powder")
 # Elements that such goods are assayed for; carbon, oxygen and the like are told by the formula alone.
-TRACED = frozenset("As Ba Cd Co Cr Cu Hg Mn Ni Pb Sb Se Sn Sr Zn".split())
+TRACED = frozenset(["As", "Ba", "Cd", "Co", "Cr", "Cu", "Hg", "Mn", "Ni", "Pb", "Sb", "Se", "Sn", "Sr", "Zn"])
 NOT_KNOWN = "no composition on record"
 
 
@@ -62,10 +62,8 @@ def _assayed(number: Number) -> ElementBounds:
     """A range as given; twice the standard deviation about a value; 0 to an upper bound; the value."""
     either_side = 2 * number.sd if number.sd is not None else 0.0
     high = number.high if number.high is not None else number.value + either_side
-    if number.low is not None:
-        low = number.low
-    else:
-        low = 0.0 if number.high is not None else number.value - either_side
+    without_low = 0.0 if number.high is not None else number.value - either_side
+    low = number.low if number.low is not None else without_low
     return ElementBounds(_fraction(low * MG_KG), _fraction(high * MG_KG), "assay on record")
 
 

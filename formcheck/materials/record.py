@@ -4,10 +4,8 @@ A record is a YAML file (see DEVELOPERS.md). `sources` at its foot maps short ke
 each datum carries one of the keys. Nothing here decides anything: rooms above read it.
 """
 
-from __future__ import annotations
-
 import re
-from typing import Annotated, Literal
+from typing import Annotated, Literal, Self, get_args
 
 from pydantic import Field, field_validator, model_validator
 
@@ -52,7 +50,7 @@ class Number(Strict):
     note: str = ""
 
     @model_validator(mode="after")
-    def _range_holds_the_value(self) -> Number:
+    def _range_holds_the_value(self) -> Self:
         _refuse_crossed(self.low, self.value, self.high)
         return self
 
@@ -73,7 +71,7 @@ class Part(Strict):
     source: str
 
     @model_validator(mode="after")
-    def _range_holds_the_value(self) -> Part:
+    def _range_holds_the_value(self) -> Self:
         _refuse_crossed(self.low, self.mass_fraction, self.high)
         return self
 
@@ -90,13 +88,14 @@ class Elements(Strict):
     source: str = ""
 
     @model_validator(mode="after")
-    def _are_elements(self) -> Elements:
+    def _are_elements(self) -> Self:
         for symbol in (*(self.only or ()), *self.mg_kg):
             if symbol not in atomic_weights():
                 raise wrong(f"the element {symbol[:20]!r}", "symbols of elements, such as Pb")
         if self.only is not None and not set(self.mg_kg) <= set(self.only):
             foreign = min(set(self.mg_kg) - set(self.only))
-            raise wrong(f"an assay of {foreign}, which `only` leaves out", f"`only` with {foreign}, or without the list")
+            raise wrong(f"an assay of {foreign}, which `only` leaves out",
+                        f"`only` with {foreign}, or without the list")
         return self
 
 
@@ -112,7 +111,7 @@ class Band(Strict):
     source: str
 
     @model_validator(mode="after")
-    def _half_heights_enclose_the_maximum(self) -> Band:
+    def _half_heights_enclose_the_maximum(self) -> Self:
         if self.half_height_nm and not self.half_height_nm[0] < self.lambda_max_nm < self.half_height_nm[1]:
             raise wrong(f"half heights {self.half_height_nm} about {self.lambda_max_nm} nm",
                         "one half height below the maximum and one above")
@@ -132,7 +131,7 @@ class Box(Strict):
     source: str = "given"
 
     @model_validator(mode="after")
-    def _has_the_size_of_its_shape(self) -> Box:
+    def _has_the_size_of_its_shape(self) -> Self:
         sizes = {"chain": self.length_nm, "plate": self.sides_nm, "ring": self.circumference_nm}
         names = {"chain": "length_nm", "plate": "sides_nm", "ring": "circumference_nm"}
         if [shape for shape, size in sizes.items() if size is not None] != [self.shape]:
@@ -199,7 +198,7 @@ class AcidBase(Strict):
     source: str = ""
 
     @model_validator(mode="after")
-    def _pka_in_order(self) -> AcidBase:
+    def _pka_in_order(self) -> Self:
         values = [number.value for number in self.pka]
         if values != sorted(values):
             raise wrong(f"pKa values {values}", "pKa values in rising order")
@@ -275,13 +274,13 @@ class Material(Strict):
         return formula
 
     @model_validator(mode="after")
-    def _every_source_is_cited(self) -> Material:
+    def _every_source_is_cited(self) -> Self:
         used = {text for text in _source_keys(self) if text}
         missing = sorted(used - set(self.sources) - {"given"})
         if missing:
             raise wrong(f"the source {missing[0]!r}, which `sources` does not list", "a key of `sources`")
-        if self.charge and self.charge.value not in Charge.__args__:  # type: ignore[attr-defined]
-            raise wrong(f"the charge {self.charge.value!r}", f"one of {', '.join(Charge.__args__)}")  # type: ignore[attr-defined]
+        if self.charge and self.charge.value not in get_args(Charge):
+            raise wrong(f"the charge {self.charge.value!r}", f"one of {', '.join(get_args(Charge))}")
         if sum(part.mass_fraction for part in self.composition) > 1 + 1e-9:
             raise wrong("parts of the composition that sum to more than 1",
                         "mass fractions of at most 1 in all")

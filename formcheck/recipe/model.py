@@ -4,9 +4,7 @@ Amounts and lengths stay the text that was written; properties give them as numb
 `title`, `what` and `ingredients` must be there: whatever is left out is unknown, not assumed.
 """
 
-from __future__ import annotations
-
-from typing import Annotated, Any, Literal, get_args
+from typing import Annotated, Any, Literal, Self, get_args
 
 from pydantic import BeforeValidator, Discriminator, Field, Tag, model_validator
 
@@ -90,7 +88,7 @@ class Film(Strict):
         "One standard deviation of that thickness from place to place, such as '2 um'."))
 
     @model_validator(mode="after")
-    def _one_thickness(self) -> Film:
+    def _one_thickness(self) -> Self:
         if (self.wet is None) == (self.dry is None):
             found = "no thickness" if self.wet is None else "both a wet and a dry thickness"
             raise wrong(found, "one of `wet: 30 um` and `dry: 12 um`")
@@ -142,7 +140,7 @@ class Wanted(Strict):
         default=None, description="The largest colour difference CIEDE2000 that is still right.")
 
     @model_validator(mode="after")
-    def _one_target(self) -> Wanted:
+    def _one_target(self) -> Self:
         if (self.lab is None) == (self.spectrum is None):
             found = "no shade" if self.lab is None else "both `lab` and `spectrum`"
             raise wrong(found, "one of `lab: [L, a, b]` and `spectrum: FILE`")
