@@ -26,6 +26,7 @@ from formcheck.trouble import trouble
 # Wider than what is seen, so that a band whose position is unsure may move in from beyond.
 WIDE_NM = np.arange(160.0, 1001.0, 5.0)
 COLOURING_KINDS = ("pigment", "dye", "indicator", "metal_powder")
+VISIBLE_NM = (400.0, 700.0)
 UNSEEN_SHARE = 0.002  # of a form whose spectrum is unknown: less than this is not seen
 
 
@@ -63,6 +64,7 @@ class Colourants:
     missing: dict[int, str] = field(default_factory=dict)
     missing_forms: dict[tuple[int, int], str] = field(default_factory=dict)
     fluorescent: list[str] = field(default_factory=list)
+    held: list[str] = field(default_factory=list)  # spectra that end within the visible, held from there
 
 
 def colourants_of(parts: Parts, present: np.ndarray) -> Colourants:
@@ -93,6 +95,7 @@ def _add_pigment(known: Colourants, found: Found, c: int) -> None:
         return
     wavelength_nm, *k_and_s = read_k_and_s(data_file(found, record.file))
     k, s = (np.maximum(resample(wavelength_nm, values)[0], 0.0) for values in k_and_s)
+    known.held += held_beyond(f"K and S of {name}", wavelength_nm)
     density = material.density_g_cm3.value
     known.pigments.append(PigmentOptics(c, k, s, record.relative_sd, density, record.most_volume_fraction, name))
     source = cited_by(material, record.source)
@@ -109,7 +112,7 @@ def _add_dye(known: Colourants, found: Found, c: int) -> None:
         known.missing[c] = f"no molar mass of {material.names[0]}, so its amount in moles is unknown"
         return
     for number, form in enumerate(material.optical.forms):
-        absorbers, basis, error, key = _form_optics(found, c, number, form)
+        absorbers, basis, error, key = _form_optics(known, found, c, number, form)
         if basis == "unknown":
             known.missing_forms[c, number] = f"no spectrum of the form {form.name!r} of {material.names[0]}"
         known.absorbers += absorbers
@@ -118,12 +121,12 @@ def _add_dye(known: Colourants, found: Found, c: int) -> None:
             basis=basis, error=error, source=cited_by(material, key) if key else None))
 
 
-def _form_optics(found: Found, c: int, number: int, form: DyeForm):
+def _form_optics(known: Colourants, found: Found, c: int, number: int, form: DyeForm):
     """Absorbers of a form, its basis, its error in words, and the key of its source."""
     name = found.material.names[0]
     if form.spectrum:
         sd = form.spectrum.relative_sd or 0.0
-        epsilon = _measured_epsilon(found, form.spectrum)
+        epsilon = _measured_epsilon(known, found, form.spectrum)
         measured = Absorber(c, number, epsilon, np.zeros_like(epsilon), sd, 0.0, name)
         return [measured], "measured", f"strength within {sd:.0%}", form.spectrum.source
     if form.bands:
@@ -156,10 +159,11 @@ def _absorber(c: int, number: int, band, name: str) -> Absorber:
                     spread["lambda_sd_nm"]["value"] if lambda_sd is None else lambda_sd, name)
 
 
-def _measured_epsilon(found: Found, record: SpectrumFile) -> np.ndarray:
+def _measured_epsilon(known: Colourants, found: Found, record: SpectrumFile) -> np.ndarray:
     path = data_file(found, record.file)
     spectrum = read_spectrum_csv(path, column=record.column)
     values, _ = resample(spectrum.wavelength_nm, spectrum.values, WIDE_NM)
+    known.held += held_beyond(f"the spectrum of {found.material.names[0]}", spectrum.wavelength_nm)
     factor = _to_epsilon(found.material, record)
     if factor is None:
         raise trouble(str(path), f"a spectrum of {record.quantity} without what turns it into epsilon",
@@ -179,6 +183,13 @@ def _to_epsilon(material: Material, record: SpectrumFile) -> float | None:
     if record.concentration_g_l is None or record.path_length_cm is None:
         return None
     return molar_mass / (record.concentration_g_l * record.path_length_cm)
+
+
+def held_beyond(what: str, wavelength_nm: np.ndarray) -> list[str]:
+    """What to say of a spectrum that does not reach over the visible; nothing where it does."""
+    first, last = float(wavelength_nm[0]), float(wavelength_nm[-1])
+    gaps = [f"below {first:g} nm"] * (first > VISIBLE_NM[0]) + [f"above {last:g} nm"] * (last < VISIBLE_NM[1])
+    return [f"{what} {' and '.join(gaps)}: the end value is held there"] if gaps else []
 
 
 def missing_reasons(known: Colourants, form_share: dict[int, np.ndarray | None]) -> list[str]:

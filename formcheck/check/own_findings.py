@@ -116,4 +116,5 @@ def unknowns_of(written: WrittenRecipe, batch: Batch, *, shade_reason: str, acid
 
 def _has_water(batch: Batch, r: int) -> bool:
     present = batch.mass_fraction[r] != 0
-    return any(is_in and (m.kind == "water" or m.composition) for is_in, m in zip(present, batch.materials, strict=True))
+    return any(is_in and (m.kind == "water" or m.composition)
+               for is_in, m in zip(present, batch.materials, strict=True))

@@ -6,6 +6,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from formcheck.check.colourants import held_beyond
 from formcheck.check.parts import Parts
 from formcheck.check.predict import Setting
 from formcheck.check.volumes import FilmState, wet_film_um
@@ -17,7 +18,7 @@ from formcheck.documents import FieldPath, path_text
 from formcheck.recipe.model import SpectrumReference
 from formcheck.recipe.read import WrittenRecipe
 from formcheck.spectra.files import read_spectrum_csv
-from formcheck.spectra.grid import WAVELENGTH_NM, resample
+from formcheck.spectra.grid import resample
 from formcheck.trouble import InputError, Problem, shown, suggestion
 
 USUAL_INDEX = 1.5  # of organic binders (common practice)
@@ -68,14 +69,15 @@ def viewing_of(written: WrittenRecipe, parts: Parts, film: FilmState, r: int = 0
         return seen(None, reason=f"the wet film is unknown: {why}")
     if recipe.ground is None:
         return seen(None, reason="no `ground` given for the film")
-    name, values, in_air, with_gloss = _ground(written)
+    name, values, in_air, with_gloss, notes = _ground(written)
     index, index_note = _film_index(written, parts, film, r)
+    notes += [index_note] if index_note else []
     gloss = recipe.specular == "included"
     in_air_gloss = gloss if with_gloss is None else with_gloss
     sd = (recipe.film.sd_um or 0.0) * wet / recipe.film.thickness_um
     setting = Setting(ground=values, ground_in_air=in_air, ground_specular_included=in_air_gloss,
                       film_index=index, specular_included=gloss)
-    return seen(setting, wet=wet, sd=sd, ground_name=name, notes=[index_note] if index_note else [],
+    return seen(setting, wet=wet, sd=sd, ground_name=name, notes=notes,
                 geometry=f"film of {wet:.3g} um wet over {name}, mirror reflection {recipe.specular}")
 
 
@@ -107,8 +109,8 @@ def _wanted_lab(written: WrittenRecipe, light: str, observer: int) -> tuple[floa
     return float(found[0]), float(found[1]), float(found[2])
 
 
-def _ground(written: WrittenRecipe) -> tuple[str, np.ndarray, bool, bool | None]:
-    """(name, reflectance, measured in air, with the mirror reflection or None as the recipe says)."""
+def _ground(written: WrittenRecipe) -> tuple[str, np.ndarray, bool, bool | None, list[str]]:
+    """(name, reflectance, measured in air, with the mirror reflection or None as the recipe says, notes)."""
     ground_said = written.recipe.ground
     if isinstance(ground_said, SpectrumReference):
         values = _measured(written, ground_said.spectrum, ground_said.column, ("ground", "spectrum"))
@@ -118,7 +120,7 @@ def _ground(written: WrittenRecipe) -> tuple[str, np.ndarray, bool, bool | None]
         raise _wrong(written, ("ground",), shown(name), suggestion(name, ground_names())
                      + " or `{spectrum: FILE}` with the measured reflectance of your own")
     record = ground_record(name)
-    return name, ground(name), record.measured_in_air, record.specular_included
+    return name, ground(name), record.measured_in_air, record.specular_included, []
 
 
 def _measured(written: WrittenRecipe, file: str, column: str | None, place: FieldPath) -> np.ndarray:
@@ -149,6 +151,3 @@ def _film_index(written: WrittenRecipe, parts: Parts, film: FilmState, r: int) -
 
 def _wrong(written: WrittenRecipe, path: FieldPath, found: str, expected: str) -> InputError:
     return InputError(Problem(written.document.place(path), found, expected, path_text(path)))
-
-
-GRID = WAVELENGTH_NM

@@ -286,6 +286,7 @@ def _left_out(model: Model, viewing: Viewing, known: Colourants, parts: Parts, b
         said.append("the uncertainty of weighing, as the recipe gives no `weighing`")
     if viewing.setting and viewing.setting.ground is not None and viewing.thickness_sd_um == 0:
         said.append("the unevenness of the film, as the recipe gives no `sd` with it")
+    said += known.held
     said += [f"the fluorescence of {name}" for name in known.fluorescent]
     if known.absorbers and batch.recipes[r].recipe.what not in SOLUTIONS:
         said.append("what drying does to the dyes: their spectra are those of solutions")
