@@ -104,7 +104,7 @@ def _wanted_lab(written: WrittenRecipe, light: str, observer: int) -> tuple[floa
     if wanted.lab is not None:
         return wanted.lab[0], wanted.lab[1], wanted.lab[2]
     assert wanted.spectrum is not None
-    values = _measured(written, wanted.spectrum, wanted.column, ("wanted", "spectrum"))
+    values, _ = _measured(written, wanted.spectrum, wanted.column, ("wanted", "spectrum"))
     found = lab(xyz(values, light, observer), white_point(light, observer))
     return float(found[0]), float(found[1]), float(found[2])
 
@@ -113,8 +113,8 @@ def _ground(written: WrittenRecipe) -> tuple[str, np.ndarray, bool, bool | None,
     """(name, reflectance, measured in air, with the mirror reflection or None as the recipe says, notes)."""
     ground_said = written.recipe.ground
     if isinstance(ground_said, SpectrumReference):
-        values = _measured(written, ground_said.spectrum, ground_said.column, ("ground", "spectrum"))
-        return f"the ground of {ground_said.spectrum}", values, True, None
+        values, notes = _measured(written, ground_said.spectrum, ground_said.column, ("ground", "spectrum"))
+        return f"the ground of {ground_said.spectrum}", values, True, None, notes
     name = str(ground_said)
     if name not in ground_names():
         raise _wrong(written, ("ground",), shown(name), suggestion(name, ground_names())
@@ -123,15 +123,16 @@ def _ground(written: WrittenRecipe) -> tuple[str, np.ndarray, bool, bool | None,
     return name, ground(name), record.measured_in_air, record.specular_included, []
 
 
-def _measured(written: WrittenRecipe, file: str, column: str | None, place: FieldPath) -> np.ndarray:
-    """A measured reflectance on the grid, as a fraction."""
+def _measured(written: WrittenRecipe, file: str, column: str | None, place: FieldPath
+              ) -> tuple[np.ndarray, list[str]]:
+    """A measured reflectance on the grid, as a fraction, and what to say of its range."""
     path = written.folder / file
     spectrum = read_spectrum_csv(path, column=column)
     values, _ = resample(spectrum.wavelength_nm, spectrum.values)
     if np.nanmax(values) > 1.5 or np.nanmin(values) < -0.01:
         raise _wrong(written, place, f"reflectance from {values.min():.3g} to {values.max():.3g} in {file}",
                      "a reflectance as a fraction from 0 to 1 (divide percent by 100)")
-    return np.clip(values, 0.0, 1.0)
+    return np.clip(values, 0.0, 1.0), held_beyond(f"the reflectance of {file}", spectrum.wavelength_nm)
 
 
 def _film_index(written: WrittenRecipe, parts: Parts, film: FilmState, r: int) -> tuple[float, str]:
