@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from formcheck.check.record import Check, Contribution, Finding, Grade, Unknown
 from formcheck.report.finding_words import by_what_would_settle, facts, limit_text, value_text
-from formcheck.report.html import Child, Column, Markup, definitions, section, table, tag
+from formcheck.report.html import Child, Markup, definitions, section, table, tag
 from formcheck.report.limit_bar import limit_bar
 from formcheck.report.marks import mark
 from formcheck.report.numbers import plain
@@ -49,15 +49,19 @@ def untold_section(check: Check, *, level: int, id: str) -> Markup | None:
 def _open(needed: list[str], found: list[Finding], *, level: int, place: int) -> Markup:
     """The rules that the same data would settle, in a table that holds all they say."""
     settled_by = tag("ul", [tag("li", one) for one in needed or [NOTHING_TO_NAME]])
-    columns: list[Column] = ["rule", "what is open", "source", "if it applies", "who decides", "where"]
-    rows: list[list[Child]] = [[
-        [tag("code", one_line(one.rule_id)), tag("span", one_line(one.title), class_="under")],
-        [one_line(one.said), tag("span", _against(one), class_="under")],
-        cited_text(one.source) if one.source else "", one_line(one.what_to_do), one_line(one.who_decides),
-        tag("code", one_line(one.place)) if one.place else ""] for one in found]
+    rules = table(f"Rules left open, group {place}", ["rule", "what is open", "if it applies", "source"],
+                  map(_open_row, found), class_="open")
     title = tag(f"h{level}", mark("unknown"), f"{count(len(found), 'rule')} would be settled by")
-    rules = table(f"Rules left open, group {place}", columns, rows, class_="open")
     return tag("div", title, settled_by, rules, class_="left-open")
+
+
+def _open_row(one: Finding) -> list[Child]:
+    """Rule, title and place; what is open; what to do and who decides; source."""
+    return [[tag("code", one_line(one.rule_id)), tag("span", one_line(one.title), class_="under"),
+             tag("span", one_line(one.place), class_="place")],
+            [one_line(one.said), tag("span", _against(one), class_="under")],
+            [one_line(one.what_to_do), tag("span", one_line(one.who_decides), class_="under")],
+            cited_text(one.source) if one.source else ""]
 
 
 def _against(finding: Finding) -> str:

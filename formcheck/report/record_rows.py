@@ -93,6 +93,8 @@ FIELD_WORDS = {
     "ci generic name": "Colour Index name", "ci constitution number": "Colour Index number", "cas": "CAS",
     "k and s": "K and S", "ph window": "pH window", "pka": "pKa", "acid base": "acid and base",
     "solubility water": "solubility in water", "ci name": "Colour Index name", "voc": "VOC",
+    "lambda max": "λmax", "epsilon": "ε", "epsilon relative sd": "relative sd of ε",
+    "half height": "half heights",
 }
 
 

@@ -8,7 +8,7 @@ from pathlib import Path
 from rich.console import Console
 from rich.text import Text
 
-from formcheck.materials.record import Material
+from formcheck.materials.record import Material, name_key
 from formcheck.materials.shelf import Found, Listed, Shelf, find, listing, open_shelf, suggest
 from formcheck.report.record_rows import label_and_unit, record_rows
 from formcheck.report.terminal_parts import heading, labelled, paragraph, speaking, table
@@ -45,9 +45,20 @@ def show_list(console: Console, shelf: Shelf, lines: Sequence[Listed]) -> None:
     for line in lines:
         found = find(shelf, line.id)
         known = [optical_text(found.material), hazards_text(found.material)] if found else ["", ""]
-        rows.append([line.id, one_line(line.names[0]), spelled(line.kind), line.ci_generic_name, *known])
-    table(console, ["id", "name", "kind", "Colour Index", "optical data", "hazards"], rows)
+        rows.append([line.id, other_name(line), spelled(line.kind), *known])
+    table(console, [("id", "whole"), "also", ("kind", "whole"), "optical", "hazards"], rows)
     paragraph(console, f"{len(lines)} materials; one of them whole: formcheck shelf ID", indent=0)
+
+
+def other_name(line: Listed) -> str:
+    """Its first name and its Colour Index name, where the id does not say them already."""
+    said = {name_key(line.id)}
+    told = []
+    for name in (line.names[0], line.ci_generic_name):
+        if name and name_key(name) not in said:
+            said.add(name_key(name))
+            told.append(one_line(name))
+    return ", ".join(told)
 
 
 def show_material(console: Console, found: Found) -> None:
@@ -90,7 +101,7 @@ def optical_text(material: Material) -> str:
         ("boxes", any(form.boxes for form in optical.forms)),
         ("colourless", all(form.colourless for form in optical.forms) and bool(optical.forms)),
     ]
-    forms = f" ({len(optical.forms)} forms)" if len(optical.forms) > 1 else ""
+    forms = f", {len(optical.forms)} forms" if len(optical.forms) > 1 else ""
     return ", ".join(name for name, there in kinds if there) + forms
 
 

@@ -69,11 +69,12 @@ def labelled(console: Console, rows: Iterable[tuple[str, str]], *, indent: int =
 
 def table(console: Console, columns: Sequence[str | tuple[str, str]],
           rows: Iterable[Sequence[str | Text]]) -> None:
-    """A plain table; a column given as (name, "right") is set flush right."""
+    """A plain table; a column given as (name, "right") is set flush right, as (name, "whole") kept whole."""
     drawn = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), header_style="underline", show_edge=False)
     for column in columns:
         name, justify = (column, "left") if isinstance(column, str) else column
-        drawn.add_column(name, justify=justify, overflow="fold")  # type: ignore[arg-type]
+        drawn.add_column(name, justify="right" if justify == "right" else "left", overflow="fold",
+                         no_wrap=justify == "whole")
     for row in rows:
         drawn.add_row(*(cell if isinstance(cell, Text) else Text(clean(cell)) for cell in row))
     console.print(Padding(drawn, (0, 0, 0, 2), expand=False))

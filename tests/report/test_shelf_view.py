@@ -53,7 +53,7 @@ def test_every_datum_stands_beside_its_source():
     assert "318.30 ± 0.10 g/mol — an old notebook (from memory, not confirmed)" in text
     assert "Invented Handbook" in line_with(text, "50-00-0")
     assert "mass fraction 0.05 — Invented Handbook" in line_with(text, "quay_salt")
-    assert "λ" not in line_with(text, "31000") and "552 nm" in line_with(text, "31000")
+    assert "λmax 552 nm" in line_with(text, "31000")
     assert "525, 580 nm" in line_with(text, "31000") and "old notebook" in line_with(text, "31000")
     assert "H317" in text and "no band above 380 nm" in text
 
@@ -69,7 +69,7 @@ def test_a_record_without_hazards_is_unknown_not_harmless():
 
 
 def test_optical_data_in_a_word():
-    assert optical_text(indicator()) == "bands (2 forms)"
+    assert optical_text(indicator()) == "bands, 2 forms"
     assert optical_text(indicator().model_copy(update={"optical": None})) == ""
 
 
