@@ -47,4 +47,4 @@ def facts(materials, fractions, *, what="coating", use=("consumer",), sold_in=("
 
 def knowledge(*records: Material):
     """Knowledge over the built-in shelf and these records."""
-    return knowledge_of(open_shelf(own=list(records)))
+    return knowledge_of(open_shelf(own=list({one.id: one for one in records}.values())))
