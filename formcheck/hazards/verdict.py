@@ -9,12 +9,12 @@ WORDS = ("not_applicable", "not_in_force", "no_flag", "within", "cannot_tell", "
 
 Kleene = tuple[np.ndarray, np.ndarray]  # bool arrays: surely so, possibly so
 
-REACH = 1e-9  # relative: what a sum of fractions may miss its limit by in rounding
+ROUNDING = 1e-9  # relative: what a sum of fractions may miss its limit by in rounding
 
 
 def passed(value: np.ndarray, limit: float | np.ndarray, comparison: str) -> np.ndarray:
     """Whether a value passes a limit, where rounding must not decide."""
-    margin = REACH * np.abs(limit)
+    margin = ROUNDING * np.abs(limit)
     return value >= limit - margin if comparison == "at_or_above" else value > limit + margin
 
 

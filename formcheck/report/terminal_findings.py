@@ -61,14 +61,19 @@ def show_untold(console: Console, check: Check) -> None:
 
 
 def show_open(console: Console, needed: list[str], found: list[Finding]) -> None:
-    """The rules that the same data would settle, three lines or so for each."""
+    """The rules that the same data would settle: three lines or so for each that something known points to,
+    the id alone of those that are open only because too little is known."""
     console.print()
     title = f"{GRADE_MARKS['unknown']} {count(len(found), 'rule')} would be settled by"
     console.print(Text(title, style="bold"))
     labelled(console, [("-", one) for one in needed or [NOTHING_TO_NAME]])
     for finding in found:
-        paragraph(console, f"{one_line(finding.rule_id)}  {one_line(finding.place)}".rstrip(), indent=4)
-        paragraph(console, open_text(finding), indent=6)
+        if not finding.faint:
+            paragraph(console, f"{one_line(finding.rule_id)}  {one_line(finding.place)}".rstrip(), indent=4)
+            paragraph(console, open_text(finding), indent=6)
+    faint = [one_line(finding.rule_id) for finding in found if finding.faint]
+    if faint:
+        paragraph(console, f"nothing points to these, nothing rules them out: {', '.join(faint)}", indent=4)
 
 
 def open_text(finding: Finding) -> str:
