@@ -7,7 +7,7 @@ each datum carries one of the keys. Nothing here decides anything: rooms above r
 import re
 from typing import Annotated, Literal, Self, get_args
 
-from pydantic import Field, field_validator, model_validator
+from pydantic import Field, ValidationInfo, field_validator, model_validator
 
 from formcheck.materials.formula import atomic_weights, parse_formula
 from formcheck.quantity import Provenance, Quantity, SourceKind, known, unknown
@@ -21,12 +21,31 @@ MaterialKind = Literal[
 PhysicalForm = Literal["powder", "granules", "flake", "crystals", "paste", "liquid", "solution", "gas"]
 Charge = Literal["anionic", "cationic", "nonionic", "amphoteric"]
 Fraction = Annotated[float, Field(ge=0, le=1)]
-Positive = Annotated[float, Field(gt=0)]
+Positive = Annotated[float, Field(gt=0, lt=1e6)]
+BoxSize = Annotated[float, Field(ge=0.05, le=1000)]
+IonCharge = Annotated[int, Field(ge=-50, le=50)]
+
+# What no material goes beyond: a record outside of it holds a slip of the pen, or the wrong unit.
+LEAST_AND_MOST = {
+    "molar_mass_g_mol": (1.0, 1e8), "density_g_cm3": (1e-5, 25.0), "refractive_index": (1.0, 6.0),
+    "oil_absorption_g_100g": (0.0, 5000.0), "nonvolatile_fraction": (0.0, 1.0), "boiling_point_c": (-273.15, 6500.0),
+    "flash_point_c": (-273.15, 2000.0), "solubility_water_g_l": (0.0, 10000.0),
+}
+PKA_LEAST_AND_MOST = (-30.0, 60.0)
+MG_KG_LEAST_AND_MOST = (0.0, 1e7)  # above 1e6 counts as all of it
 
 
 def _refuse_crossed(low: float | None, value: float, high: float | None) -> None:
     if (low is not None and low > value) or (high is not None and high < value):
         raise wrong(f"{value:g} outside its own range {low} to {high}", "low <= value <= high")
+
+
+def _refuse_beyond(number, least_and_most: tuple[float, float]) -> None:
+    """Refuses a Number of which the value or an end of the range cannot be."""
+    least, most = least_and_most
+    for value in (number.value, number.low, number.high):
+        if value is not None and not least <= value <= most:
+            raise wrong(f"{value:g}", f"a value from {least:g} to {most:g}")
 
 
 class Source(Strict):
@@ -43,7 +62,7 @@ class Number(Strict):
     """A number with its source; `sd` is one standard deviation, `low`/`high` a published range."""
 
     value: float
-    sd: Annotated[float, Field(ge=0)] | None = None
+    sd: Annotated[float, Field(ge=0, le=1e6)] | None = None
     low: float | None = None
     high: float | None = None
     source: str
@@ -92,6 +111,8 @@ class Elements(Strict):
         for symbol in (*(self.only or ()), *self.mg_kg):
             if symbol not in atomic_weights():
                 raise wrong(f"the element {symbol[:20]!r}", "symbols of elements, such as Pb")
+        for number in self.mg_kg.values():
+            _refuse_beyond(number, MG_KG_LEAST_AND_MOST)
         if self.only is not None and not set(self.mg_kg) <= set(self.only):
             foreign = min(set(self.mg_kg) - set(self.only))
             raise wrong(f"an assay of {foreign}, which `only` leaves out",
@@ -104,9 +125,10 @@ class Band(Strict):
 
     lambda_max_nm: Annotated[float, Field(gt=150, lt=2000)]
     epsilon_l_mol_cm: Annotated[float, Field(gt=0, lt=1e7)]
-    half_height_nm: Annotated[list[float], Field(min_length=2, max_length=2)] | None = None
+    half_height_nm: Annotated[list[Annotated[float, Field(gt=100, lt=4000)]],
+                              Field(min_length=2, max_length=2)] | None = None
     epsilon_relative_sd: Annotated[float, Field(ge=0, lt=5)] | None = None
-    lambda_sd_nm: Annotated[float, Field(ge=0)] | None = None
+    lambda_sd_nm: Annotated[float, Field(ge=0, le=500)] | None = None
     medium: str = ""
     source: str
 
@@ -123,9 +145,9 @@ class Box(Strict):
 
     shape: Literal["chain", "plate", "ring"]
     n_pi_electrons: Annotated[int, Field(ge=2, le=200)]
-    length_nm: Positive | None = None
-    sides_nm: Annotated[list[Positive], Field(min_length=2, max_length=2)] | None = None
-    circumference_nm: Positive | None = None
+    length_nm: BoxSize | None = None
+    sides_nm: Annotated[list[BoxSize], Field(min_length=2, max_length=2)] | None = None
+    circumference_nm: BoxSize | None = None
     bond_alternation_ev: Annotated[float, Field(ge=0, le=10)] = 0.0
     count: Annotated[int, Field(ge=1, le=100)] = 1
     source: str = "given"
@@ -191,14 +213,16 @@ class AcidBase(Strict):
     """
 
     pka: list[Number] = Field(default_factory=list)
-    charge_fully_protonated: int = 0
-    counter_charge: int = 0
+    charge_fully_protonated: IonCharge = 0
+    counter_charge: IonCharge = 0
     buffers_unknowably: bool = False
     neutral: bool = False  # takes no part in acid-base exchange between pH 0 and 14
     source: str = ""
 
     @model_validator(mode="after")
     def _pka_in_order(self) -> Self:
+        for number in self.pka:
+            _refuse_beyond(number, PKA_LEAST_AND_MOST)
         values = [number.value for number in self.pka]
         if values != sorted(values):
             raise wrong(f"pKa values {values}", "pKa values in rising order")
@@ -208,11 +232,17 @@ class AcidBase(Strict):
 class Window(Strict):
     """Published pH range in which a material stays what it is, and what happens beyond each end."""
 
-    low: float | None = None
-    high: float | None = None
+    low: Annotated[float, Field(ge=-5, le=20)] | None = None
+    high: Annotated[float, Field(ge=-5, le=20)] | None = None
     below: str = ""
     above: str = ""
     source: str
+
+    @model_validator(mode="after")
+    def _low_is_below_high(self) -> Self:
+        if self.low is not None and self.high is not None and self.low > self.high:
+            raise wrong(f"a window from pH {self.low:g} to {self.high:g}", "low <= high")
+        return self
 
 
 class HazardEntry(Strict):
@@ -220,8 +250,8 @@ class HazardEntry(Strict):
 
     hazard_class: str
     code: str  # H statement, such as H317
-    specific_limit_percent: float | None = None
-    m_factor: int | None = None
+    specific_limit_percent: Annotated[float, Field(ge=1e-7, le=100)] | None = None
+    m_factor: Annotated[int, Field(ge=1, le=10**9)] | None = None
     source: str
 
 
@@ -263,6 +293,13 @@ class Material(Strict):
     hazards: Hazards | None = None
     note: str = ""
     sources: dict[str, Source] = Field(default_factory=dict)
+
+    @field_validator(*LEAST_AND_MOST)
+    @classmethod
+    def _value_can_be(cls, number: Number | None, info: ValidationInfo) -> Number | None:
+        if number is not None and info.field_name:
+            _refuse_beyond(number, LEAST_AND_MOST[info.field_name])
+        return number
 
     @field_validator("formula")
     @classmethod
