@@ -116,10 +116,8 @@ def _model_for(document: Document):
         return KINDS[kind]
     place = document.place(("kind",))
     found = "no `kind` here" if kind is None else f"the kind {shown(kind)}"
-    if isinstance(kind, str):
-        expected = suggestion(kind, list(KINDS))
-    else:
-        expected = f"`kind:` with one of {', '.join(KINDS)}"
+    line = f"`kind:` with one of {', '.join(KINDS)}"
+    expected = suggestion(kind, list(KINDS)) if isinstance(kind, str) else line
     raise trouble(document.file, found, expected, line=place.line, column=place.column, field="kind")
 
 

@@ -18,10 +18,10 @@ from formcheck.hazards.limits import (
     quantity_bounds,
 )
 from formcheck.hazards.matching import Matcher
-from formcheck.hazards.meetings import CompiledMeeting, compile_meeting, meets
+from formcheck.hazards.meetings import CompiledMeeting, compile_meeting, each_material_once, meets
 from formcheck.hazards.mixture import Bounds, Knowledge, MixtureFacts
 from formcheck.hazards.rule import Caution, LimitOnSum, MustNotMeet, PhWindow, Rule
-from formcheck.hazards.scope import scope_of
+from formcheck.hazards.scope import distinct_scopes, scope_of
 from formcheck.hazards.verdict import (
     APPLIES,
     CANNOT_TELL,
@@ -83,11 +83,12 @@ def answer_codes(compiled: CompiledBook, facts: MixtureFacts) -> np.ndarray:
     """
     codes = np.full((facts.n_recipes, len(compiled.rules)), NOT_IN_FORCE, np.int8)
     values = limit_values(compiled, facts)
-    water = compiled.water_in(facts)
+    water, once = compiled.water_in(facts), each_material_once(facts)
+    distinct, which = distinct_scopes(facts.scopes)
     for q, (rule, one) in enumerate(zip(compiled.rules, compiled.compiled, strict=True)):
         if one is not None:
-            scope = scope_of(rule, facts.scopes, compiled.book.words)
-            codes[:, q] = _codes(one, facts, water, scope, values.get(q, []))
+            scope = scope_of(rule, distinct, which, compiled.book.words)
+            codes[:, q] = _codes(one, facts, once, water, scope, values.get(q, []))
     return codes
 
 
@@ -99,15 +100,15 @@ def limit_values(compiled: CompiledBook, facts: MixtureFacts) -> dict[int, list[
     return {q: [next(bounds) for _ in one.quantities] for q, one in limits.items()}
 
 
-def _codes(one: CompiledRule, facts: MixtureFacts, water: Kleene, scope: Kleene, values: list[Bounds]
-           ) -> np.ndarray:
+def _codes(one: CompiledRule, facts: MixtureFacts, once: np.ndarray, water: Kleene, scope: Kleene,
+           values: list[Bounds]) -> np.ndarray:
     if isinstance(one, CompiledLimit):
         scope = both(scope, conditions_met(one, values[1:])) if one.conditions else scope
         return answered(limit_exceeded(one, values[0]), scope, trips_as=EXCEEDS, else_as=WITHIN)
     if isinstance(one, CompiledWindow):
         return _window_codes(one, facts, water, scope)
     if isinstance(one, CompiledMeeting):
-        return answered(meets(one, facts, water), scope, trips_as=APPLIES, else_as=NO_FLAG)
+        return answered(meets(one, facts, once, water), scope, trips_as=APPLIES, else_as=NO_FLAG)
     called = anywhere(ingredients_called(one, facts))
     return answered(called, scope, trips_as=APPLIES, else_as=NO_FLAG)
 

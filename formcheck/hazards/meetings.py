@@ -12,6 +12,7 @@ from formcheck.hazards.dated import InForce, in_force
 from formcheck.hazards.matching import Matcher, Pair
 from formcheck.hazards.mixture import MixtureFacts, filled
 from formcheck.hazards.rule import Company, MustNotMeet
+from formcheck.hazards.selector import Selector
 from formcheck.hazards.verdict import Kleene, both
 from formcheck.hazards.water import water_in
 
@@ -24,7 +25,6 @@ class CompiledMeeting:
     force: InForce
     first: np.ndarray
     second: np.ndarray
-    same: np.ndarray  # (I, M) bool: lines of one material are one
 
 
 def compile_meeting(rule: MustNotMeet, materials: Materials, matcher: Matcher, *, as_of: date
@@ -33,32 +33,40 @@ def compile_meeting(rule: MustNotMeet, materials: Materials, matcher: Matcher, *
     if force is None:
         return None
     return CompiledMeeting(rule, force, party(rule.first.where, materials, matcher),
-                           party(rule.second.where, materials, matcher), one_column_each(materials))
+                           party(rule.second.where, materials, matcher))
 
 
-def party(selector, materials: Materials, matcher: Matcher) -> np.ndarray:
+def party(selector: Selector, materials: Materials, matcher: Matcher) -> np.ndarray:
     pairs: list[Pair] = [matcher.presence(selector, material) for material in materials]
     return np.array(pairs).reshape(-1, 2).T > 0
 
 
-def one_column_each(materials: Materials) -> np.ndarray:
-    ids = [material.id for material in materials]
-    kept = list(dict.fromkeys(ids))
-    return np.array([[one == other for other in kept] for one in ids], bool).reshape(len(ids), len(kept))
+def each_material_once(facts: MixtureFacts) -> np.ndarray:
+    """(R, I) float: 1 where a material is in the recipe, on the first of its lines alone."""
+    ids = [material.id for material in facts.materials]
+    present = facts.present.copy()
+    for i, one in enumerate(ids):
+        first = ids.index(one)
+        if first != i:
+            present[:, first] |= present[:, i]
+            present[:, i] = False
+    return present.astype(np.float32)
 
 
-def meets(compiled: CompiledMeeting, facts: MixtureFacts, water: Kleene) -> Kleene:
-    """Whether two different materials of a recipe are the pair, under the conditions: (R,) twice."""
-    present = facts.present
-    surely, possibly = (_two_different(present, compiled, which) for which in (0, 1))
+def meets(compiled: CompiledMeeting, facts: MixtureFacts, once: np.ndarray, water: Kleene) -> Kleene:
+    """Whether two different materials of a recipe are the pair, under the conditions: (R,) twice.
+
+    `once` is `each_material_once(facts)`, which all pairs share.
+    """
+    surely, possibly = (_two_different(once, compiled.first[which], compiled.second[which])
+                        for which in (0, 1))
     return both((surely, possibly), conditions(compiled.rule.when, facts, water))
 
 
-def _two_different(present: np.ndarray, compiled: CompiledMeeting, which: int) -> np.ndarray:
+def _two_different(once: np.ndarray, first: np.ndarray, second: np.ndarray) -> np.ndarray:
     """(R,) bool. Pairs of one of each party, less those in which both are the same material."""
-    first, second = (((present & one[which]).astype(np.int32) @ compiled.same) > 0
-                     for one in (compiled.first, compiled.second))
-    return first.sum(axis=1) * second.sum(axis=1) > (first & second).sum(axis=1)
+    counts = once @ np.array([first, second, first & second], np.float32).T
+    return counts[:, 0] * counts[:, 1] > counts[:, 2]
 
 
 def points_to_it(compiled: CompiledMeeting, facts: MixtureFacts) -> np.ndarray:

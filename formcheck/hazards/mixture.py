@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass, field, replace
+from functools import cached_property
 
 import numpy as np
 
@@ -102,7 +103,7 @@ class MixtureFacts:
                        voc_g_l={kind: cut(bounds) for kind, bounds in self.voc_g_l.items()},
                        density_g_ml=None if self.density_g_ml is None else cut(self.density_g_ml))
 
-    @property
+    @cached_property
     def present(self) -> np.ndarray:
         """(R, I) bool: the ingredient is in the recipe, be its amount known or not."""
         return ~(self.mass_fraction == 0)

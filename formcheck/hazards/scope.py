@@ -16,13 +16,17 @@ NOT_STATED = {"what": "what it is", "use": "what it is used for", "sold_in": "wh
               "acts": "what is done with it"}
 
 
-def scope_of(rule: Rule, scopes: Sequence[Scope], words: Vocabulary) -> Kleene:
-    """(R,) bool twice: the rule surely, and possibly, speaks of the recipe."""
-    kept: dict[Scope, Pair] = {}
-    for scope in scopes:
-        if scope not in kept:
-            kept[scope] = speaks_of(rule, scope, words)
-    return np.array([kept[s][0] for s in scopes], bool), np.array([kept[s][1] for s in scopes], bool)
+def distinct_scopes(scopes: Sequence[Scope]) -> tuple[list[Scope], np.ndarray]:
+    """The different scopes of a batch, and which of them each recipe has (R,)."""
+    numbers: dict[Scope, int] = {}
+    which = [numbers.setdefault(scope, len(numbers)) for scope in scopes]
+    return list(numbers), np.array(which, int)
+
+
+def scope_of(rule: Rule, distinct: Sequence[Scope], which: np.ndarray, words: Vocabulary) -> Kleene:
+    """(R,) bool twice: the rule surely, and possibly, speaks of the recipe. See `distinct_scopes`."""
+    pairs = np.array([speaks_of(rule, scope, words) for scope in distinct], bool).reshape(-1, 2)
+    return pairs[which, 0], pairs[which, 1]
 
 
 def speaks_of(rule: Rule, scope: Scope, words: Vocabulary) -> Pair:

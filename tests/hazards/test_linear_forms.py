@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from datetime import date
 
 import numpy as np
@@ -105,3 +106,15 @@ def test_answers_in_full_agree_with_the_codes():
     for answer in judge(COMPILED, one):
         worst[answer.rule.id] = max(worst.get(answer.rule.id, 0), WORDS.index(answer.answer))
     assert worst == {rule_id: int(code) for rule_id, code in codes.items()}
+
+
+@pytest.mark.parametrize("known", [True, False])
+def test_sentences_are_plain_and_give_no_verdict(known):
+    ph = (6.0, 6.4) if known else None
+    told = judge(COMPILED, facts(MATERIALS, np.ones((1, len(MATERIALS))) / len(MATERIALS), ph=ph,
+                                 nonvolatile=STAYS if known else None, voc=40.0 if known else None))
+    assert {"exceeds", "applies"} <= {one.answer for one in told}
+    for one in told:
+        assert not re.search(r"\b(safe|compliant|approved|nan|inf|None)\b|[{}]", one.said), one.said
+        assert (one.answer == "cannot_tell") == bool(one.would_settle), one
+        assert (one.grade is not None) == (one.answer in ("exceeds", "applies", "cannot_tell"))

@@ -47,9 +47,9 @@ def recipes(draw):
     ids = ["paste", *draw(st.lists(st.sampled_from(SHELF), min_size=1, max_size=4, unique=True))]
     weights = np.array([draw(st.floats(0.001, 1.0)) for _ in ids])
     ph = draw(st.sampled_from([1.0, 4.0, 7.0, 9.5, 13.0]))
-    whole = dict(what=draw(st.sampled_from(sorted(BOOK.words.what))), use=draw(USES), sold_in=draw(MARKETS),
-                 acts=draw(ACTS), ph=(ph, ph + 0.2), voc=draw(st.floats(0, 900)), density=1.1,
-                 nonvolatile=[draw(st.sampled_from([0.0, 0.4, 1.0])) for _ in ids])
+    whole = {"what": draw(st.sampled_from(sorted(BOOK.words.what))), "use": draw(USES), "sold_in": draw(MARKETS),
+                 "acts": draw(ACTS), "ph": (ph, ph + 0.2), "voc": draw(st.floats(0, 900)), "density": 1.1,
+                 "nonvolatile": [draw(st.sampled_from([0.0, 0.4, 1.0])) for _ in ids]}
     return own, ids, weights / weights.sum(), whole
 
 
@@ -127,14 +127,14 @@ def test_nothing_is_known_any_more(recipe):
     before = codes_of(own, ids, fractions, whole)
     kinds = [(builtin.built_in(one).kind if one != "paste" else own[0]["kind"]) for one in ids]
     bare = [Material(id=one, names=[one], kind=kind) for one, kind in zip(ids, kinds, strict=True)]
-    nothing = dict(what=whole["what"], use=(), sold_in=(), acts=(), density=None)
+    nothing = {"what": whole["what"], "use": (), "sold_in": (), "acts": (), "density": None}
     after = codes_of(own, bare, np.full(len(ids), np.nan), nothing)
     assert_no_flag_is_lost(before, after, "nothing known")
 
 
 def test_an_ingredient_that_is_not_there_flags_nothing():
     own = [{"id": "paste", "names": ["paste"], "kind": "binder", "sources": SOURCES}]
-    whole = dict(use=("consumer",), sold_in=("EU",), ph=(7.0, 7.0), voc=0.0, nonvolatile=[0, 1])
+    whole = {"use": ("consumer",), "sold_in": ("EU",), "ph": (7.0, 7.0), "voc": 0.0, "nonvolatile": [0, 1]}
     with_it = codes_of(own, ["water", "lead_chromate" if "lead_chromate" in SHELF else SHELF[0]],
                        np.array([1.0, 0.0]), whole)
     alone = codes_of(own, ["water"], np.array([1.0]), replace_last(whole))
