@@ -130,9 +130,15 @@ def material_of(one: ExampleIngredient, number: int) -> Material:
             symbol: {"value": percent * 1e4, "source": "example"}
             for symbol, percent in one.elements_percent.items()}}
     if one.ph_window:
-        record["ph_window"] = {"low": one.ph_window[0], "high": one.ph_window[1], "source": "example",
-                               "below": "it changes", "above": "it changes"}
+        record["ph_window"] = _window(one.ph_window)
     return Material.model_validate(record)
+
+
+def _window(ends: list[float | None]) -> dict[str, Any]:
+    """A window of the record: each end that is told with a consequence."""
+    low = {} if ends[0] is None else {"low": ends[0], "below": "it changes"}
+    high = {} if ends[1] is None else {"high": ends[1], "above": "it changes"}
+    return {**low, **high, "source": "example"}
 
 
 def _text(value: str) -> dict[str, str]:

@@ -84,7 +84,7 @@ def without(record: Material, field: str) -> Material:
     return Material.model_validate(data)
 
 
-@settings(max_examples=15, deadline=None, suppress_health_check=list(HealthCheck))
+@settings(max_examples=12, deadline=None, suppress_health_check=list(HealthCheck))
 @given(recipes(), st.data())
 def test_a_record_loses_a_datum(recipe, data):
     own, ids, fractions, whole = recipe
@@ -99,7 +99,7 @@ def test_a_record_loses_a_datum(recipe, data):
     assert_no_flag_is_lost(before, after, f"{ids[which]} without {field}")
 
 
-@settings(max_examples=15, deadline=None, suppress_health_check=list(HealthCheck))
+@settings(max_examples=12, deadline=None, suppress_health_check=list(HealthCheck))
 @given(recipes(), st.data())
 def test_a_recipe_loses_a_datum(recipe, data):
     own, ids, fractions, whole = recipe

@@ -5,7 +5,7 @@ from __future__ import annotations
 import pytest
 
 from formcheck.hazards.book import load_book
-from formcheck.hazards.try_examples import failed_examples
+from formcheck.hazards.try_examples import answer_to, failed_examples
 
 BOOK = load_book()
 RULES = {rule.id: rule for rule in BOOK.rules}
@@ -16,6 +16,11 @@ WINDOW_ENDS = [(rule.id, n, end) for rule in BOOK.rules if rule.kind == "ph_wind
                if getattr(window, end) is not None]
 CONDITIONS = [(rule.id, end) for rule in BOOK.rules if rule.kind == "must_not_meet"
               for end in ("ph_below", "ph_above") if getattr(rule.when, end) is not None]
+
+
+def is_noticed(rule) -> bool:
+    """Whether an example of the rule gets another answer than it expects."""
+    return any(answer_to(rule, example, BOOK.words) != example.expect for example in rule.examples)
 
 
 @pytest.mark.parametrize("rule_id", sorted(RULES))
@@ -29,7 +34,7 @@ def test_a_moved_limit_is_noticed(rule_id, n, factor):
     rule = RULES[rule_id]
     moved = [one.model_copy(update={"value": one.value * factor}) if i == n else one
              for i, one in enumerate(rule.limit)]
-    assert failed_examples(rule.model_copy(update={"limit": moved}), BOOK.words)
+    assert is_noticed(rule.model_copy(update={"limit": moved}))
 
 
 @pytest.mark.parametrize("factor", [0.9, 1.1])
@@ -38,7 +43,7 @@ def test_a_moved_end_of_a_window_is_noticed(rule_id, n, end, factor):
     rule = RULES[rule_id]
     moved = [one.model_copy(update={end: getattr(one, end) * factor}) if i == n else one
              for i, one in enumerate(rule.window)]
-    assert failed_examples(rule.model_copy(update={"window": moved}), BOOK.words)
+    assert is_noticed(rule.model_copy(update={"window": moved}))
 
 
 @pytest.mark.parametrize("factor", [0.9, 1.1])
@@ -46,7 +51,7 @@ def test_a_moved_end_of_a_window_is_noticed(rule_id, n, end, factor):
 def test_a_moved_condition_of_a_pair_is_noticed(rule_id, end, factor):
     rule = RULES[rule_id]
     when = rule.when.model_copy(update={end: getattr(rule.when, end) * factor})
-    assert failed_examples(rule.model_copy(update={"when": when}), BOOK.words)
+    assert is_noticed(rule.model_copy(update={"when": when}))
 
 
 def test_the_book_is_large_and_of_many_issuers():
