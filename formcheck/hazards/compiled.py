@@ -24,7 +24,6 @@ from formcheck.hazards.rule import Caution, LimitOnSum, MustNotMeet, PhWindow, R
 from formcheck.hazards.scope import distinct_scopes, scope_of
 from formcheck.hazards.verdict import (
     APPLIES,
-    CANNOT_TELL,
     EXCEEDS,
     NO_FLAG,
     NOT_IN_FORCE,
@@ -121,8 +120,3 @@ def _window_codes(one: CompiledWindow, facts: MixtureFacts, water: Kleene, scope
     confirmed = np.array([s.source.verified and s.surely for s in one.stood], bool)
     stands = asked.any(axis=1) & ~(asked & ~confirmed).any(axis=1) & ~np.isnan(np.asarray(facts.ph[0], float))
     return np.where((codes == NO_FLAG) & stands, WITHIN, codes).astype(np.int8)
-
-
-def is_told(code: int) -> bool:
-    """Whether an answer belongs among the findings of a recipe."""
-    return code in (CANNOT_TELL, EXCEEDS, APPLIES)
