@@ -239,7 +239,11 @@ class Window(Strict):
     source: str
 
     @model_validator(mode="after")
-    def _low_is_below_high(self) -> Self:
+    def _is_a_window(self) -> Self:
+        if self.low is None and self.high is None:
+            raise wrong("a window with neither end", "`low`, `high` or both")
+        if (self.below and self.low is None) or (self.above and self.high is None):
+            raise wrong("what happens beyond an end that is not given", "`below` with `low`, `above` with `high`")
         if self.low is not None and self.high is not None and self.low > self.high:
             raise wrong(f"a window from pH {self.low:g} to {self.high:g}", "low <= high")
         return self
@@ -262,6 +266,13 @@ class Hazards(Strict):
     entries: list[HazardEntry] = Field(default_factory=list)
     source: str
     note: str = ""
+
+    @model_validator(mode="after")
+    def _entries_as_the_status_says(self) -> Self:
+        if (self.status == "classified") != bool(self.entries):
+            raise wrong(f"the status {self.status} with {len(self.entries)} entries",
+                        "`classified` with entries, `not_classified` without; no `hazards` at all where unknown")
+        return self
 
 
 class Material(Strict):
