@@ -91,14 +91,16 @@ def findings_of(answers: Sequence[Answer]) -> list[Finding]:
 
 def finding_of(answer: Answer) -> Finding:
     rule = answer.rule
+    shares = sorted(answer.contributions, key=lambda share: -(share.low or 0.0))
+    heaviest = shares[0].place if shares and (shares[0].low or 0.0) > 0 else ""
     return Finding(
         grade=answer.grade or "note", rule_id=rule.id, title=rule.title, answer=_word(answer.answer),
         value=answer.value, value_low=answer.value_low, value_high=answer.value_high, limit=answer.limit,
         unit=answer.unit, basis=answer.basis, said=answer.said, what_to_do=rule.what_to_do,
         who_decides=rule.who_decides, jurisdiction=rule.jurisdiction, in_force_from=answer.in_force_from,
-        source=cited_rule(answer.source), contributions=[_contribution(share) for share in answer.contributions],
+        source=cited_rule(answer.source), contributions=[_contribution(share) for share in shares],
         would_settle=list(answer.would_settle),
-        faint=answer.faint, place=answer.place)
+        faint=answer.faint, place=heaviest or answer.place)
 
 
 def _word(answer: str):
