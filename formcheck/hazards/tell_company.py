@@ -13,6 +13,7 @@ from formcheck.hazards.selector import Selector
 from formcheck.hazards.sentences import caution_sentence, meeting_sentence, number
 from formcheck.hazards.tell import Asked, plain_answer
 from formcheck.hazards.verdict import CANNOT_TELL
+from formcheck.hazards.water import water_in
 
 
 def told_meeting(asked: Asked, how: CompiledMeeting) -> Answer:
@@ -70,9 +71,12 @@ def _conditions_missing(asked: Asked, when: Company) -> list[Missing]:
     surely, possibly = (bool(one[0]) for one in conditions(when, asked.facts, water))
     if surely or not possibly:
         return []
-    if when.ph_below is None and when.ph_above is None:
-        return [Missing(RECIPE, "whether there is water in the mixture")]
-    return [Missing(RECIPE, "the pH of the mixture")]
+    wet = water_in(asked.facts, water)[0][0]
+    found = [] if wet else [Missing(RECIPE, "whether there is water in the mixture")]
+    hangs_on_ph = when.ph_below is not None or when.ph_above is not None
+    if hangs_on_ph and (wet or np.isnan(asked.facts.ph[0][0])):
+        found.append(Missing(RECIPE, "the pH of the mixture"))
+    return found
 
 
 def _when(when: Company) -> str:

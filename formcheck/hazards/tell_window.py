@@ -13,6 +13,7 @@ from formcheck.hazards.rule import PhWindow, RuleSource
 from formcheck.hazards.sentences import listed, window_sentence
 from formcheck.hazards.tell import Asked, plain_answer
 from formcheck.hazards.verdict import CANNOT_TELL, EXCEEDS
+from formcheck.hazards.water import water_in
 from formcheck.hazards.windows import CompiledWindow, Stood, outside, windows_untold
 
 
@@ -56,6 +57,8 @@ def _missing(asked: Asked, stood: Stood) -> list[Missing]:
         found += [Missing(stood.ingredient, datum) for datum in data_missing(
             asked.compiled.matcher, asked.rule.where, asked.facts.materials[stood.ingredient],
             content=False)]
+    if not water_in(asked.facts, asked.compiled.water_in(asked.facts))[0][0]:
+        found.append(Missing(RECIPE, "whether there is water in the mixture"))
     if _ph(asked) == (-np.inf, np.inf):
         found.append(Missing(RECIPE, "the pH of the mixture"))
     elif not found:

@@ -41,6 +41,7 @@ def water_present(facts: MixtureFacts, bearing: np.ndarray) -> Kleene:
 
 
 def water_in(facts: MixtureFacts, water: Kleene) -> Kleene:
-    """The same; a mixture whose pH is known holds water, whatever its records say."""
+    """The same; a known pH tells that there is water where there may be, and contradicts records that say
+    there is none: then nobody can tell."""
     ph_known = ~np.isnan(np.asarray(facts.ph[0], float)) & ~np.isnan(np.asarray(facts.ph[1], float))
-    return water[0] | ph_known, water[1] | ph_known
+    return water[0] | (ph_known & water[1]), water[1] | ph_known

@@ -116,7 +116,8 @@ def test_a_recipe_loses_a_datum(recipe, data):
         poorer[lost] = () if lost in ("use", "sold_in", "acts") else None
     after = codes_of(own, ids, amounts, poorer)
     assert_no_flag_is_lost(before, after, f"recipe without {lost}")
-    assert_nothing_unknown_passes(before, after, f"recipe without {lost}")
+    if lost != "ph":  # a pH without water contradicts the records; without the pH nothing does any more
+        assert_nothing_unknown_passes(before, after, f"recipe without {lost}")
 
 
 @settings(max_examples=6, deadline=None, suppress_health_check=list(HealthCheck))

@@ -268,6 +268,8 @@ class TestWindows:
     def test_without_water_there_is_no_ph(self):
         oil = material("oil", kind="solvent", cas="222-22-2")
         assert answer(self.WINDOW, facts([self.BLUE, oil], [0.2, 0.8])).answer == "no_flag"
+        told = answer(self.WINDOW, facts([self.BLUE, oil], [0.2, 0.8], ph=12.0))
+        assert told.answer == "cannot_tell" and told.would_settle == ("whether there is water in the mixture",)
 
     def test_a_window_from_memory_says_nothing_of_what_is_inside(self):
         source = {"book": {"instrument": "memory", "kind": "memory", "verified": False}}
