@@ -138,8 +138,8 @@ def _inputs(batch: Batch, viewing: Viewing, known: Colourants, acid: AcidState, 
     pigment_sd = [one.relative_sd for one in pigments]
     ph, ph_sd = (7.0, 0.0) if acid.ph is None else (acid.ph, acid.ph_sd)
     # label, value, standard deviation, least value
-    groups: list[tuple[list[str], ArrayLike, ArrayLike, float]] = [
-        (["weighing"] * len(lines), mass, np.where(mass > 0, weighing, 0.0), 0.0),
+    groups: list[tuple[list[str], ArrayLike, ArrayLike, ArrayLike]] = [
+        (["weighing"] * len(lines), mass, np.where(mass > 0, weighing, 0.0), LEAST_STRENGTH * mass),
         (spectra_of, 1.0, [one.strength_sd for one in absorbers], LEAST_STRENGTH),
         (spectra_of, 0.0, [one.lambda_sd_nm for one in absorbers], -np.inf),
         (spectra_of, 0.0, [float(one.doubt.any()) for one in absorbers], -np.inf),

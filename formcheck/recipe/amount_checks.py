@@ -103,6 +103,18 @@ def refuse_unsolvable(lines: Lines, solution: Solution) -> None:
                            f"amounts that leave each other room, or {ONE_TO_MAKE_UP}")
     for equation in solution.system:
         _refuse_mismatch(lines, solution, equation)
+    _refuse_more_than_batch(lines, solution)
+
+
+def _refuse_more_than_batch(lines: Lines, solution: Solution) -> None:
+    """InputError where what is known by mass outweighs the batch, whatever the unknown ingredients weigh."""
+    known, whole = np.nan_to_num(solution.mass_g, nan=0.0).sum(axis=1), solution.total_mass_g
+    over = known > (1 + CLOSE_BY_VOLUME) * whole
+    if over.any() and lines.batch is not None:
+        row = int(np.argmax(over))
+        raise lines.refuse_batch(
+            f"a batch of {lines.batch.written}, {whole[row]:.5g} g, with {known[row]:.5g} g in it{variant(over)}",
+            f"a larger batch, or {ONE_TO_MAKE_UP}")
 
 
 def refuse_negative_free_amount(lines: Lines, solution: Solution, free: int | None) -> None:
