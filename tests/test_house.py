@@ -16,7 +16,8 @@ HOUSE = TOP / "formcheck"
 # Floor of each room or single file of formcheck/. Rooms of one floor do not know each other, except
 # the ground floor, whose small tools build on one another.
 FLOORS = {
-    "trouble": 0, "quantity": 0, "strict": 0, "units": 0, "documents": 0, "files_out": 0, "__init__": 0,
+    "trouble": 0, "quantity": 0, "strict": 0, "units": 0, "documents": 0, "files_out": 0, "cells": 0,
+    "workbook": 0, "__init__": 0,
     "spectra": 1,
     "materials": 2,
     "recipe": 3, "colour": 3, "acid_base": 3, "film": 3, "hazards": 3,

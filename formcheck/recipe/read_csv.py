@@ -6,8 +6,8 @@ import dataclasses
 import re
 from pathlib import Path
 
+from formcheck.cells import MOST_COLUMNS, MOST_ROWS, Cell, Rows, delimited_rows
 from formcheck.documents import Document, decode, read_bytes
-from formcheck.recipe.cells import MOST_COLUMNS, MOST_ROWS, Cell, Rows, delimited_rows
 from formcheck.recipe.table import document_from_rows, heading_row, numeric_cells
 from formcheck.trouble import InputError, Place, Problem, shown
 

@@ -21,8 +21,8 @@ from collections.abc import Iterator
 from pathlib import PurePath
 from typing import Any
 
+from formcheck.cells import Cell, Rows
 from formcheck.documents import Document, FieldPath, path_text, plain_scalar
-from formcheck.recipe.cells import Cell, Rows
 from formcheck.trouble import InputError, Place, Problem, shown, suggestion
 from formcheck.units import REST_WORDS
 

@@ -13,8 +13,8 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from formcheck.cells import delimited_rows
 from formcheck.documents import parse_yaml
-from formcheck.recipe.cells import delimited_rows
 from formcheck.recipe.model import Film, Measured, Recipe, SpectrumReference, Wanted
 from formcheck.recipe.read import digest, read_recipe, written_recipe
 from formcheck.recipe.table import FIELDS

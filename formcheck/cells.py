@@ -8,7 +8,7 @@ from datetime import date, time, timedelta
 
 from formcheck.trouble import trouble
 
-MOST_ROWS = 2_000
+MOST_ROWS = 2_000  # of a recipe; other tables give limits of their own
 MOST_COLUMNS = 60
 
 
@@ -62,8 +62,9 @@ def delimited_rows(text: str, delimiter: str, file: str) -> Rows:
                   line=line, column=position - line_start + 1)
 
 
-def refuse_too_large(n_rows: int, n_columns: int, file: str) -> None:
-    """InputError for a table larger than a recipe can be."""
-    if n_rows > MOST_ROWS or n_columns > MOST_COLUMNS:
+def refuse_too_large(n_rows: int, n_columns: int, file: str, *, most_rows: int = MOST_ROWS,
+                     most_columns: int = MOST_COLUMNS) -> None:
+    """InputError for a table larger than what is read can be."""
+    if n_rows > most_rows or n_columns > most_columns:
         raise trouble(file, f"a table that reaches row {n_rows:,}, column {n_columns:,}",
-                      f"at most {MOST_ROWS:,} rows and {MOST_COLUMNS} columns", line=n_rows)
+                      f"at most {most_rows:,} rows and {most_columns:,} columns", line=n_rows)
