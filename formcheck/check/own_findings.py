@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import numpy as np
+
 from formcheck.check.acid import AcidState
 from formcheck.check.parts import Parts
 from formcheck.check.record import Cited, Finding, Shade, Unknown
@@ -65,12 +67,23 @@ def _porous(written: WrittenRecipe, film: FilmState, r: int) -> Finding | None:
         return None
     return Finding(
         grade="note", rule_id="formcheck-porous-film", title="More pigment than the binder can wet", answer="applies",
-        value=pvc.value[r] * 100, limit=cpvc.value[r] * 100, unit="%", basis="by volume of the dry film",
-        said=f"The pigment volume concentration is {pvc.value[r]:.0%}, the critical one {cpvc.value[r]:.0%}: air takes "
-             "the place of binder, which hides and scrubs off, and which the shade does not hold.",
+        value=_percent(pvc.value[r]), value_low=_percent(pvc.low[r]), value_high=_percent(pvc.high[r]),
+        limit=_percent(cpvc.value[r]) or _percent(cpvc.high[r]), unit="%", basis="by volume of the dry film",
+        said=f"The pigment volume concentration is {_share(pvc.value[r], pvc.low[r], 'at least')}, the critical one "
+             f"{_share(cpvc.value[r], cpvc.high[r], 'at most')}: air takes the place of binder, which hides and scrubs "
+             "off, and which the shade does not hold.",
         what_to_do="Expect a matt, porous, lighter film than predicted; test scrub and adhesion.",
         who_decides=MAKER, source=Cited(cite="Asbeck & Van Loo, Ind. Eng. Chem. 41 (1949) 1470", kind="paper"),
         place=str(written.document.place(("ingredients",))))
+
+
+def _percent(fraction: float) -> float | None:
+    return float(fraction) * 100 if np.isfinite(fraction) else None
+
+
+def _share(value: float, bound: float, words: str) -> str:
+    """A fraction, or where it is not known its bound: at least 60%."""
+    return f"{value:.0%}" if np.isfinite(value) else f"{words} {bound:.0%}"
 
 
 def _beyond_solubility(batch: Batch, parts: Parts, r: int) -> list[Finding]:
