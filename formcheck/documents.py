@@ -10,7 +10,7 @@ from __future__ import annotations
 import re
 from dataclasses import dataclass, field
 from pathlib import Path
-from typing import Any
+from typing import Any, get_args
 
 import yaml
 
@@ -204,8 +204,22 @@ def validate(model, document: Document):
     try:
         return model.model_validate(document.data)
     except ValidationError as error:
-        problems = [_problem(document, item) for item in error.errors(include_url=False)]
-    raise InputError(_without_echoes(problems))
+        problems = [_problem(model, document, item) for item in error.errors(include_url=False)]
+    raise InputError(_without_echoes(_without_misspelt(problems)))
+
+
+def _without_misspelt(problems: list[Problem]) -> list[Problem]:
+    """A misspelt key is both unknown and missing: told once, as unknown. In the order of the file."""
+    misspelt = {(path_of(problem.field), problem.expected.split("'")[1]) for problem in problems
+                if problem.found.startswith("the unknown key") and problem.expected.startswith("did you mean")}
+    kept = [problem for problem in problems
+            if not (problem.found.startswith("no '") and (problem.field, problem.found.split("'")[1]) in misspelt)]
+    return sorted(kept, key=lambda problem: (problem.place.line or 0, problem.place.column or 0))
+
+
+def path_of(field: str) -> str:
+    """The field around a field: `ingredients[2]` for `ingredients[2].amount`."""
+    return field.rpartition(".")[0]
 
 
 def _without_echoes(problems: list[Problem]) -> list[Problem]:
@@ -216,19 +230,37 @@ def _without_echoes(problems: list[Problem]) -> list[Problem]:
     return list(kept.values())[:20]
 
 
-def _problem(document: Document, item) -> Problem:
+def _problem(model, document: Document, item) -> Problem:
     path = _real_path(document.data, tuple(item["loc"]))
     context = item.get("ctx") or {}
-    if item["type"] == "unknown_key":
-        path = (*path, context["key"])
-        return Problem(document.place(path), f"the unknown key {shown(context['key'])}",
-                       suggestion(context["key"], context["known"].split("\n")), path_text(path))
+    if item["type"] == "extra_forbidden":
+        key = str(item["loc"][-1])
+        return Problem(document.place(path), f"the unknown key {shown(key)}",
+                       suggestion(key, keys_known_at(model, tuple(item["loc"][:-1]))), path_text(path))
     if item["type"] == "missing":
         name = str(item["loc"][-1])
         return Problem(document.place(path), f"no {name!r} here", f"a line `{name}: ...`", path_text(path))
     if item["type"] == "ours":
         return Problem(document.place(path), context["found"], context["expected"], path_text(path))
     return Problem(document.place(path), shown(item.get("input")), _plain_words(item), path_text(path))
+
+
+def keys_known_at(model, loc: FieldPath) -> list[str]:
+    """The keys that a model inside `model` knows; `loc` is pydantic's way to it, steps of alternatives and all."""
+    known = [model]
+    for step in loc:
+        fields = [one.model_fields[step] for one in known if str(step) in one.model_fields]
+        named = [one for one in known if one.__name__ == step]
+        inside = [inner for field_ in fields for inner in _models_in(field_.annotation)]
+        known = inside or named or known
+    return list(dict.fromkeys(field_.alias or name for one in known for name, field_ in one.model_fields.items()))
+
+
+def _models_in(annotation: Any) -> list:
+    """Every model class that an annotation mentions."""
+    if hasattr(annotation, "model_fields"):
+        return [annotation]
+    return [model for part in get_args(annotation) for model in _models_in(part)]
 
 
 def _real_path(data: Any, loc: FieldPath) -> FieldPath:

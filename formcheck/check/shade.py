@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from random import Random
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -25,7 +26,7 @@ from formcheck.colour.cielab import lab, lch
 from formcheck.colour.difference import delta_e_2000, difference_words
 from formcheck.colour.grounds import ground, ground_record
 from formcheck.colour.hiding import contrast_ratio
-from formcheck.colour.srgb import swatch
+from formcheck.colour.srgb import hex_code, srgb
 from formcheck.colour.tristimulus import white_point, xyz
 from formcheck.colour.uncertainty import difference_spread, probability_within, propagate
 from formcheck.materials.elements import molar_mass_of
@@ -201,8 +202,14 @@ def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts:
 
 
 def swatch_of(shade, light: str, observer: int) -> Swatch:
-    hexes, inside = swatch(np.asarray(shade, float), light, observer)
-    return Swatch(lab=_triple(shade), srgb_hex=str(hexes), in_gamut=bool(inside))
+    return swatches_of(np.asarray(shade, float)[None, :], light, observer)[0]
+
+
+def swatches_of(shades: np.ndarray, light: str, observer: int) -> list[Swatch]:
+    """Swatches of many shades (N, 3) under one light."""
+    rgb, inside = srgb(shades, light, observer)
+    return [Swatch(lab=_triple(shade), srgb_hex=hex_code(one), in_gamut=bool(fits))
+            for shade, one, fits in zip(shades, rgb, inside, strict=True)]
 
 
 def _triple(values) -> tuple[float, float, float]:
@@ -211,7 +218,11 @@ def _triple(values) -> tuple[float, float, float]:
 
 def _draws(x: Inputs, seed: int = 20) -> np.ndarray:
     """Rows that the inputs could be, (DRAWS, inputs); the same inputs always give the same rows."""
-    drawn = x.value + np.random.default_rng(seed).standard_normal((DRAWS, len(x.value))) * x.sd
+    uncertain = np.flatnonzero(x.sd > 0)
+    chance = Random(seed)  # NumPy's generators take longer to import than these few numbers to draw
+    noise = np.array([chance.gauss(0.0, 1.0) for _ in range(DRAWS * len(uncertain))]).reshape(DRAWS, -1)
+    drawn = np.tile(x.value, (DRAWS, 1))
+    drawn[:, uncertain] += noise * x.sd[uncertain]
     return np.maximum(drawn, x.lower)
 
 
@@ -241,7 +252,7 @@ def _region(drawn: np.ndarray, light: str, observer: int) -> list[Swatch]:
     """Shades along the direction in which the drawn ones spread most, from one end to the other."""
     _, axes = np.linalg.eigh(np.cov(drawn.T))
     order = np.argsort((drawn - drawn.mean(axis=0)) @ axes[:, -1])
-    return [swatch_of(drawn[order[int(q * (len(order) - 1))]], light, observer) for q in REGION_AT]
+    return swatches_of(drawn[[order[int(q * (len(order) - 1))] for q in REGION_AT]], light, observer)
 
 
 def _contrast(model: Model, viewing: Viewing) -> float:

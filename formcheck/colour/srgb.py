@@ -32,8 +32,13 @@ HALVINGS = 20
 def swatch(lab: ArrayLike, light: Light = "D65", observer_deg: int = 10) -> tuple[str, bool]:
     """(`#rrggbb`, in gamut) of one colour, L*, a*, b* of shape (3,) under `light`; see `srgb`."""
     rgb, inside = srgb(lab, light, observer_deg)
+    return hex_code(rgb), bool(inside)
+
+
+def hex_code(rgb: np.ndarray) -> str:
+    """`#rrggbb` of one colour, sRGB from 0 to 1, shape (3,)."""
     r, g, b = (int(level) for level in np.rint(rgb * 255))
-    return f"#{r:02x}{g:02x}{b:02x}", bool(inside)
+    return f"#{r:02x}{g:02x}{b:02x}"
 
 
 def srgb(
@@ -62,7 +67,7 @@ def srgb(
     lab = np.array(lab, dtype=float)
     inside = _fits(_linear(lab, light, observer_deg))
     lab[..., 0] = np.clip(lab[..., 0], 0, 100)
-    drawn = _with_less_chroma(lab, light, observer_deg)
+    drawn = lab if inside.all() else _with_less_chroma(lab, light, observer_deg)
     linear = np.clip(_linear(np.where(inside[..., None], lab, drawn), light, observer_deg), 0, 1)
     return _companded(linear), inside
 
