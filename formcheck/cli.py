@@ -3,6 +3,7 @@
 import gc
 import sys
 from datetime import date
+from io import TextIOWrapper
 from pathlib import Path
 from typing import Annotated
 
@@ -38,7 +39,7 @@ def check(files: Files, as_of: AsOf = None, shelf: ShelfFolder = None, rules: Ru
         except InputError as error:
             troubles.append(error)
     if json:
-        _print_json(checks)
+        _print_json(checks, several=len(files) > 1)
     elif checks:
         from formcheck.report.terminal import show_checks
 
@@ -69,7 +70,7 @@ def estimate(
 
     record = estimate_boxes(box or [], file)
     if json:
-        print(record.model_dump_json(indent=1))
+        _print_utf_8(record.model_dump_json(indent=1))
     else:
         from formcheck.report.estimate import show_estimate
 
@@ -117,7 +118,7 @@ def schema(check: Annotated[bool, typer.Option("--check", help="The schema of a 
         from formcheck.recipe.schema import recipe_json_schema
 
         described = recipe_json_schema()
-    print(json_module.dumps(described, indent=1, ensure_ascii=False))
+    _print_utf_8(json_module.dumps(described, indent=1, ensure_ascii=False))
 
 
 @app.command()
@@ -147,6 +148,9 @@ def main() -> None:
     except BrokenPipeError:  # `formcheck shelf | head`
         sys.stderr.close()
         raise SystemExit(NOTHING_HELD) from None
+    except OSError as error:  # a full disk behind `> file`
+        _say(f"formcheck cannot write its output: {error.strerror or error}")
+        raise SystemExit(UNUSABLE) from None
 
 
 def _day(text: str | None) -> date:
@@ -159,11 +163,20 @@ def _day(text: str | None) -> date:
         raise trouble("--as-of", repr(text[:40]), "a date such as 2026-12-01") from None
 
 
-def _print_json(checks) -> None:
-    if len(checks) == 1:
-        print(checks[0].model_dump_json(indent=1))
-    else:
-        print("[" + ",\n".join(one.model_dump_json(indent=1) for one in checks) + "]")
+def _print_json(checks, *, several: bool) -> None:
+    """One object for one file; for several a list, however many of them could be used."""
+    texts = [one.model_dump_json(indent=1) for one in checks]
+    if several:
+        _print_utf_8("[" + ",\n".join(texts) + "]")
+    elif texts:
+        _print_utf_8(texts[0])
+
+
+def _print_utf_8(text: str) -> None:
+    """JSON is UTF-8, whatever the terminal speaks."""
+    if isinstance(sys.stdout, TextIOWrapper):
+        sys.stdout.reconfigure(encoding="utf-8")
+    print(text)
 
 
 def _complain(error: InputError) -> None:

@@ -29,9 +29,9 @@ def lay_out_workshop(folder: Path) -> Path:
     InputError
         something stands at `folder` already, or it cannot be written.
     """
-    if folder.exists():
-        raise trouble(str(folder), "something of this name already", "a folder that does not exist yet")
     try:
+        if folder.exists():
+            raise trouble(str(folder), "something of this name already", "a folder that does not exist yet")
         folder.parent.mkdir(parents=True, exist_ok=True)
         beside = Path(tempfile.mkdtemp(dir=folder.parent, prefix=f".{folder.name}."))
         try:
