@@ -32,7 +32,7 @@ def check_file(path: Path, *, as_of: date, shelf_folder: Path | None = None,
         the recipe, a material record, a spectrum or a rule cannot be used; with file, line and column.
     """
     return check_recipe(read_recipe(path), as_of=as_of, shelf_folder=shelf_folder,
-                        book=book or load_book(rule_folders))
+                        book=book or load_book(rule_folders, with_examples=False))
 
 
 def check_recipe(written: WrittenRecipe, *, as_of: date, book: Book, shelf_folder: Path | None = None) -> Check:

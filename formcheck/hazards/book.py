@@ -12,6 +12,7 @@ from typing import Any
 from formcheck.documents import Document, validate
 from formcheck.hazards.bundle import read_bundle, read_document
 from formcheck.hazards.rule import KINDS, Rule
+from formcheck.hazards.trusted import trusted
 from formcheck.hazards.vocabulary import FILE_NAME, Vocabulary, read_vocabulary, refuse_unknown_words
 from formcheck.trouble import InputError, Problem, shown, suggestion, trouble
 
@@ -55,10 +56,11 @@ def built_in_folder() -> Path:
 
 
 def load_book(folders: Iterable[Path | str] = (), *, own: Path | None = None,
-              bundle: dict[str, Any] | None = None) -> Book:
+              bundle: dict[str, Any] | None = None, with_examples: bool = True) -> Book:
     """Read formcheck's own packs (or the folder `own` in their stead), then the user's `folders`.
 
     `bundle` spares the parsing of files that are in it to the byte; by default the one that is shipped.
+    Judging a recipe asks for no examples: without them, rules of the bundle are not validated anew.
 
     Raises
     ------
@@ -75,7 +77,8 @@ def load_book(folders: Iterable[Path | str] = (), *, own: Path | None = None,
     for folder, is_own in sources:
         for path in rule_files(folder):
             try:
-                one = read_rule(path, words, pack=_pack_name(folder, path), own=is_own, bundle=bundle)
+                one = read_rule(path, words, pack=_pack_name(folder, path), own=is_own, bundle=bundle,
+                                with_examples=with_examples)
                 _refuse_second_id(one, written)
             except InputError as error:
                 problems.extend(error.problems)
@@ -97,9 +100,12 @@ def rule_files(folder: Path) -> list[Path]:
 
 
 def read_rule(path: Path, words: Vocabulary, *, pack: str = "", own: bool = False,
-              bundle: dict[str, Any] | None = None) -> Written:
+              bundle: dict[str, Any] | None = None, with_examples: bool = True) -> Written:
     """One rule from its file; InputError with the place of everything that is wrong."""
     document = read_document(path, bundle or {}, most_bytes=MOST_BYTES_OF_A_RULE, what="a rule file")
+    if own and not with_examples and not document.places:  # out of the bundle, where only valid rules are
+        data = {**document.data, "examples": []}
+        return Written(trusted(KINDS[data["kind"]], data), document.file, pack, own)
     rule: Rule = validate(_model_for(document), document)
     if not rule.id.endswith(path.stem.replace("_", "-")):
         raise trouble(document.file, f"the id {shown(rule.id)} in a file named {path.name}",
