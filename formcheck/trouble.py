@@ -35,7 +35,8 @@ class Problem:
 
     def __str__(self) -> str:
         where = f"{self.place}  {self.field}".rstrip()
-        return f"{where}\n  found {self.found}\n  expected {self.expected}"
+        asked = "" if self.expected.startswith("did you mean") else "expected "
+        return f"{where}\n  found {self.found}\n  {asked}{self.expected}"
 
 
 class InputError(Exception):

@@ -144,7 +144,7 @@ def test_the_command_refuses_without_a_traceback(workshop, seed):
     assert done.returncode in (0, 1, 2)
     assert "Traceback" not in done.stderr + done.stdout
     if done.returncode == 2:
-        assert path.name in done.stderr and "expected" in done.stderr and not done.stdout
+        assert path.name in done.stderr and "found" in done.stderr and not done.stdout
 
 
 def test_the_command_refuses_bytes_folders_and_fifty_megabytes(tmp_path):
