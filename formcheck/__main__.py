@@ -1,3 +1,3 @@
-from formcheck.cli import main
+from formcheck.cli import run
 
-main()
+run()
