@@ -156,7 +156,7 @@ def main() -> None:
 
 
 def run() -> None:
-    """The console entry: `main`, then out at once, as nothing is left to close and unloading takes a tenth of the time."""
+    """The console entry: `main`, then out at once: nothing is left to close, and unloading takes its time."""
     code: object = NOTHING_HELD
     try:
         main()
