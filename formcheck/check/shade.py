@@ -2,23 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from dataclasses import dataclass
-from random import Random
-
 import numpy as np
-from numpy.typing import ArrayLike
 
-from formcheck.check.acid import AcidState, shares_at
-from formcheck.check.colourants import WIDE_NM, Colourants, colourants_of, missing_reasons
+from formcheck.check.acid import AcidState
+from formcheck.check.colourants import Colourants, colourants_of, missing_reasons
 from formcheck.check.parts import Parts
-from formcheck.check.predict import (
-    Optics,
-    Setting,
-    Variants,
-    pigment_volume_fraction,
-    predict_spectrum,
-)
+from formcheck.check.predict import Setting, pigment_volume_fraction
+from formcheck.check.prediction_model import Model, draws_of, prediction_model
 from formcheck.check.record import Shade, Spectrum, Swatch, UnderLight, Wanted
 from formcheck.check.setting import SOLUTIONS, Viewing
 from formcheck.check.volumes import FilmState
@@ -29,34 +19,10 @@ from formcheck.colour.hiding import contrast_ratio
 from formcheck.colour.srgb import hex_code, srgb
 from formcheck.colour.tristimulus import white_point, xyz
 from formcheck.colour.uncertainty import difference_spread, probability_within, propagate
-from formcheck.materials.elements import molar_mass_of
 from formcheck.recipe.batch import Batch
 from formcheck.spectra.grid import WAVELENGTH_NM
 
-DRAWS = 200
 REGION_AT = (0.05, 0.25, 0.5, 0.75, 0.95)  # along the direction in which the shade is least sure
-WEIGHINGS = np.sqrt(2.0)  # a weighing is the difference of two readings
-LEAST_STRENGTH = 0.05
-
-
-@dataclass(frozen=True)
-class Inputs:
-    """The uncertain inputs of a prediction: values, spreads, least values, and what each is called."""
-
-    value: np.ndarray
-    sd: np.ndarray
-    lower: np.ndarray
-    label: list[str]
-
-
-@dataclass(frozen=True)
-class Model:
-    """A recipe made ready for prediction: rows of inputs in, spectra or Lab out."""
-
-    inputs: Inputs
-    spectra: Callable[[np.ndarray, Setting], np.ndarray]
-    variants: Callable[[np.ndarray], Variants]
-    optics: Optics
 
 
 def shade_of(batch: Batch, parts: Parts, *, film: FilmState, acid: AcidState, viewing: Viewing,
@@ -68,7 +34,7 @@ def shade_of(batch: Batch, parts: Parts, *, film: FilmState, acid: AcidState, vi
     if reason:
         return None, reason, known
     assert viewing.setting is not None
-    model = _model(batch, parts, film, acid, viewing, known, r)
+    model = prediction_model(batch, parts, film, acid, viewing, known, r)
     return _shade(model, viewing, known, form_share, parts, batch, r), "", known
 
 
@@ -85,89 +51,6 @@ def _why_not(batch: Batch, film: FilmState, viewing: Viewing, known: Colourants,
     return "; ".join(dict.fromkeys(reasons))
 
 
-def _model(batch: Batch, parts: Parts, film: FilmState, acid: AcidState, viewing: Viewing, known: Colourants,
-           r: int) -> Model:
-    optics = _optics(parts, known)
-    columns = [line.material for line in batch.lines[r]]
-    share_of_line = parts.share[columns]
-    density = float(film.density_g_ml.value[r])
-    inputs = _inputs(batch, viewing, known, acid, r)
-    n_lines, n_abs, n_pig = len(columns), len(known.absorbers), len(known.pigments)
-    at = np.cumsum([n_lines, n_abs, n_abs, n_abs, n_pig, n_pig, 1, 1])[:-1]
-
-    def variants(rows: np.ndarray) -> Variants:
-        mass, strength, shift, doubt, k, s, thickness, ph = np.split(rows, at, axis=1)
-        return Variants(
-            mass_fraction=mass @ share_of_line / mass.sum(axis=1, keepdims=True),
-            density_g_ml=np.full(len(rows), density), share=_absorber_shares(parts, known, ph[:, 0]),
-            wet_thickness_um=thickness[:, 0], strength=strength, shift_nm=shift, doubt=doubt, k_scale=k, s_scale=s)
-
-    def spectra(rows: np.ndarray, setting: Setting) -> np.ndarray:
-        return predict_spectrum(optics, setting, variants(rows))
-
-    return Model(inputs, spectra, variants, optics)
-
-
-def _optics(parts: Parts, known: Colourants) -> Optics:
-    wide, grid = len(WIDE_NM), len(WAVELENGTH_NM)
-    molar_masses = []
-    for one in known.absorbers:
-        material = parts.materials[one.constituent]
-        molar_mass = molar_mass_of(material).value if material is not None else None
-        assert molar_mass is not None
-        molar_masses.append(molar_mass)
-    return Optics(
-        wavelength_nm=WAVELENGTH_NM, wide_nm=WIDE_NM,
-        absorber_constituent=np.array([one.constituent for one in known.absorbers], dtype=int),
-        molar_mass_g_mol=np.array(molar_masses),
-        epsilon=np.array([one.epsilon for one in known.absorbers]).reshape(-1, wide),
-        epsilon_doubt=np.array([one.doubt for one in known.absorbers]).reshape(-1, wide),
-        pigment_constituent=np.array([one.constituent for one in known.pigments], dtype=int),
-        pigment_density_g_ml=np.array([one.density_g_ml for one in known.pigments]),
-        k=np.array([one.k for one in known.pigments]).reshape(-1, grid),
-        s=np.array([one.s for one in known.pigments]).reshape(-1, grid))
-
-
-def _inputs(batch: Batch, viewing: Viewing, known: Colourants, acid: AcidState, r: int) -> Inputs:
-    """Inputs in the order that `_model` takes them apart again."""
-    lines, absorbers, pigments = batch.lines[r], known.absorbers, known.pigments
-    step = batch.recipes[r].recipe.balance_step_g
-    weighing = 0.0 if step is None else step / np.sqrt(12.0) * WEIGHINGS
-    mass = batch.line_mass_g[r, : len(lines)]
-    spectra_of = [f"spectrum of {one.name}" for one in absorbers]
-    optics_of = [f"K and S of {one.name}" for one in pigments]
-    pigment_sd = [one.relative_sd for one in pigments]
-    ph, ph_sd = (7.0, 0.0) if acid.ph is None else (acid.ph, acid.ph_sd)
-    # label, value, standard deviation, least value
-    groups: list[tuple[list[str], ArrayLike, ArrayLike, ArrayLike]] = [
-        (["weighing"] * len(lines), mass, np.where(mass > 0, weighing, 0.0), LEAST_STRENGTH * mass),
-        (spectra_of, 1.0, [one.strength_sd for one in absorbers], LEAST_STRENGTH),
-        (spectra_of, 0.0, [one.lambda_sd_nm for one in absorbers], -np.inf),
-        (spectra_of, 0.0, [float(one.doubt.any()) for one in absorbers], -np.inf),
-        (optics_of, 1.0, pigment_sd, LEAST_STRENGTH),
-        (optics_of, 1.0, pigment_sd, LEAST_STRENGTH),
-        (["film thickness"], viewing.wet_thickness_um, viewing.thickness_sd_um, 0.0),
-        (["pH"], ph, ph_sd, -np.inf),
-    ]
-    value, sd, lower = (
-        np.concatenate([np.broadcast_to(np.asarray(group[n], dtype=float), len(group[0])) for group in groups])
-        for n in (1, 2, 3))
-    return Inputs(value, sd, lower, [label for group in groups for label in group[0]])
-
-
-def _absorber_shares(parts: Parts, known: Colourants, ph: np.ndarray) -> np.ndarray:
-    """Share of each absorber's form at each pH, (N, F)."""
-    shares = np.ones((len(ph), len(known.absorbers)))
-    at: dict[int, np.ndarray] = {}
-    for f, one in enumerate(known.absorbers):
-        material = parts.materials[one.constituent]
-        assert material is not None
-        if one.constituent not in at:
-            at[one.constituent] = shares_at(material, ph)
-        shares[:, f] = at[one.constituent][:, one.form]
-    return shares
-
-
 def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts: Parts, batch: Batch, r: int) -> Shade:
     assert viewing.setting is not None
     setting, light, observer = viewing.setting, viewing.lights[0], viewing.observer_deg
@@ -177,7 +60,7 @@ def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts:
         return lab(xyz(model.spectra(rows, setting), light, observer), white_point(light, observer))
 
     moved = propagate(labs, x.value, x.sd, lower=x.lower)
-    draws = _draws(x)
+    draws = draws_of(x)
     drawn_spectra = model.spectra(draws, setting)
     drawn = lab(xyz(drawn_spectra, light, observer), white_point(light, observer))
     estimated = any(one.basis == "box model" for one in known.basis)
@@ -214,16 +97,6 @@ def swatches_of(shades: np.ndarray, light: str, observer: int) -> list[Swatch]:
 
 def _triple(values) -> tuple[float, float, float]:
     return float(values[0]), float(values[1]), float(values[2])
-
-
-def _draws(x: Inputs, seed: int = 20) -> np.ndarray:
-    """Rows that the inputs could be, (DRAWS, inputs); the same inputs always give the same rows."""
-    uncertain = np.flatnonzero(x.sd > 0)
-    chance = Random(seed)  # NumPy's generators take longer to import than these few numbers to draw
-    noise = np.array([chance.gauss(0.0, 1.0) for _ in range(DRAWS * len(uncertain))]).reshape(DRAWS, -1)
-    drawn = np.tile(x.value, (DRAWS, 1))
-    drawn[:, uncertain] += noise * x.sd[uncertain]
-    return np.maximum(drawn, x.lower)
 
 
 def _against_wanted(viewing: Viewing, shade: np.ndarray, covariance: np.ndarray):

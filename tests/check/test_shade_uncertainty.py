@@ -9,8 +9,8 @@ from recipes import demo_data, shade, written
 from formcheck.check.acid import acid_state
 from formcheck.check.colourants import colourants_of
 from formcheck.check.parts import parts_of
+from formcheck.check.prediction_model import prediction_model
 from formcheck.check.setting import viewing_of
-from formcheck.check.shade import _model
 from formcheck.check.volumes import film_state
 from formcheck.colour.cielab import lab
 from formcheck.colour.tristimulus import white_point, xyz
@@ -31,7 +31,7 @@ def drawn_labs(name: str) -> np.ndarray:
     film, acid = film_state(batch, parts, batch.shelves[0]), acid_state(batch, batch.shelves[0])
     viewing = viewing_of(recipe, parts, film)
     known = colourants_of(parts, ~(parts.fractions(batch.mass_fraction)[0] == 0))
-    model = _model(batch, parts, film, acid, viewing, known, 0)
+    model = prediction_model(batch, parts, film, acid, viewing, known, 0)
     x, chance = model.inputs, np.random.default_rng(7)
     rows = np.maximum(x.value + chance.standard_normal((DRAWN, len(x.value))) * x.sd, x.lower)
     light, observer = viewing.lights[0], viewing.observer_deg
