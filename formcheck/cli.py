@@ -59,6 +59,35 @@ def check(files: Files, as_of: AsOf = None, shelf: ShelfFolder = None, rules: Ru
 
 
 @app.command()
+def shade(
+    file: Annotated[Path, typer.Argument(help="A recipe file.", show_default=False)],
+    vary: Annotated[str | None, typer.Option(
+        "--vary", metavar="INGREDIENT=FROM..TO", help="Run an amount through a row: 'blue paste=2..12 % w/w'.")] = None,
+    steps: Annotated[int, typer.Option("--steps", help="How many amounts.")] = 11,
+    ground: Annotated[list[str] | None, typer.Option(
+        "--ground", help="A built-in ground, or a file of reflectance; again for each.")] = None,
+    light: Annotated[list[str] | None, typer.Option("--light", help="A light; again for each.")] = None,
+    shelf: ShelfFolder = None, json: Json = False, page: Page = None,
+) -> None:
+    """The shade alone, as written or along a row of amounts, on several grounds and under several lights."""
+    from formcheck.check.sweep import sweep_shades
+
+    record = sweep_shades(file, vary=vary, steps=steps, grounds=ground or [], lights=light or [], shelf_folder=shelf)
+    if json:
+        _print_utf_8(record.model_dump_json(indent=1))
+    else:
+        from formcheck.report.sweep import show_sweep
+
+        show_sweep(record)
+    if page:
+        from formcheck.files_out import write_text
+        from formcheck.report.sweep_page import sweep_html
+
+        write_text(page, sweep_html(record))
+        _say(f"wrote {page}")
+
+
+@app.command()
 def estimate(
     box: Annotated[list[str] | None, typer.Option(
         "--box", metavar="WORDS", help="A box: 'chain 8 1.2 nm', 'plate 14 0.9 x 0.5 nm', 'ring 6 0.84 nm' "

@@ -30,7 +30,7 @@ def shade_of(batch: Batch, parts: Parts, *, film: FilmState, acid: AcidState, vi
     """The Shade, or None with the reason; and the optical data it stands on."""
     fractions = parts.fractions(batch.mass_fraction)[r]
     known = colourants_of(parts, ~(fractions == 0))
-    reason = _why_not(batch, film, viewing, known, form_share, fractions, r)
+    reason = why_not(batch, film, viewing, known, form_share, fractions, r)
     if reason:
         return None, reason, known
     assert viewing.setting is not None
@@ -38,7 +38,7 @@ def shade_of(batch: Batch, parts: Parts, *, film: FilmState, acid: AcidState, vi
     return _shade(model, viewing, known, form_share, parts, batch, r), "", known
 
 
-def _why_not(batch: Batch, film: FilmState, viewing: Viewing, known: Colourants, form_share, fractions, r: int) -> str:
+def why_not(batch: Batch, film: FilmState, viewing: Viewing, known: Colourants, form_share, fractions, r: int) -> str:
     reasons = missing_reasons(known, form_share)
     if viewing.reason:
         reasons.append(viewing.reason)
@@ -79,9 +79,9 @@ def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts:
         ground=viewing.ground_name, geometry=viewing.geometry, wanted=wanted, de00=de00, de00_sd=de00_sd,
         probability_within=within, difference_words=words,
         lights=_under_lights(value, viewing), region=_region(drawn, light, observer),
-        contrast_ratio=_contrast(model, viewing) if setting.ground is not None else None,
-        dominated_by=_dominant(moved.share_total, x.label),
-        basis=_basis_with_shares(known, form_share, parts), left_out=_left_out(model, viewing, known, parts, batch, r))
+        contrast_ratio=contrast_ratios(model, viewing, x.value[None, :])[0] if setting.ground is not None else None,
+        dominated_by=dominant(moved.share_total, x.label),
+        basis=basis_with_shares(known, form_share, parts), left_out=left_out(model, viewing, known, parts, batch, r))
 
 
 def swatch_of(shade, light: str, observer: int) -> Swatch:
@@ -128,21 +128,20 @@ def _region(drawn: np.ndarray, light: str, observer: int) -> list[Swatch]:
     return swatches_of(drawn[[order[int(q * (len(order) - 1))] for q in REGION_AT]], light, observer)
 
 
-def _contrast(model: Model, viewing: Viewing) -> float:
-    """Y over black to Y over white at this film, over the charts of the standards, D65."""
+def contrast_ratios(model: Model, viewing: Viewing, rows: np.ndarray) -> list[float]:
+    """Y over black to Y over white of every row's film, over the charts of the standards, D65."""
     assert viewing.setting is not None
-    rows = model.inputs.value[None, :]
     y = []
     for name in ("chart_black", "chart_white"):
         record = ground_record(name)
         setting = Setting(ground=ground(name), ground_in_air=record.measured_in_air,
                           ground_specular_included=record.specular_included,
                           film_index=viewing.setting.film_index, specular_included=viewing.setting.specular_included)
-        y.append(xyz(model.spectra(rows, setting), "D65", 10)[0, 1])
-    return float(contrast_ratio(y_black=y[0], y_white=y[1]))
+        y.append(xyz(model.spectra(rows, setting), "D65", 10)[:, 1])
+    return [float(ratio) for ratio in contrast_ratio(y_black=y[0], y_white=y[1])]
 
 
-def _dominant(share: np.ndarray, label: list[str]) -> str:
+def dominant(share: np.ndarray, label: list[str]) -> str:
     """The source with the largest part of the variance of L*, a*, b* together."""
     variance: dict[str, float] = {}
     for name, part in zip(label, share, strict=True):
@@ -151,7 +150,7 @@ def _dominant(share: np.ndarray, label: list[str]) -> str:
     return f"{name} ({variance[name]:.0%} of the variance)" if variance[name] > 0 else ""
 
 
-def _basis_with_shares(known: Colourants, form_share, parts: Parts):
+def basis_with_shares(known: Colourants, form_share, parts: Parts):
     basis = []
     for one in known.basis:
         share = None
@@ -164,7 +163,7 @@ def _basis_with_shares(known: Colourants, form_share, parts: Parts):
     return basis
 
 
-def _left_out(model: Model, viewing: Viewing, known: Colourants, parts: Parts, batch: Batch, r: int) -> list[str]:
+def left_out(model: Model, viewing: Viewing, known: Colourants, parts: Parts, batch: Batch, r: int) -> list[str]:
     said = list(viewing.notes)
     if batch.recipes[r].recipe.balance_step_g is None:
         said.append("the uncertainty of weighing, as the recipe gives no `weighing`")

@@ -1,0 +1,52 @@
+"""The ShadeSweep: predicted shades of one recipe, as written or along a row of amounts, on grounds and under lights.
+
+Terminal, JSON and page of `formcheck shade` all show this record and nothing else.
+"""
+
+from typing import Literal
+
+from pydantic import Field
+
+from formcheck.check.record import DEFERRAL, ColourantBasis, Part, Swatch, UnderLight, Wanted
+
+VERSION = 1
+
+
+class SweptShade(Part):
+    """One amount on one ground. `shade` of the first light; `lights` holds every light."""
+
+    amount: float | None  # in the unit of the sweep; None without a sweep
+    ground: str
+    swatch: Swatch
+    lab_sd: tuple[float, float, float]
+    lights: list[UnderLight]
+    de00: float | None = None
+    de00_sd: float | None = None
+    probability_within: float | None = None
+    difference_words: str = ""
+    contrast_ratio: float | None = None
+    dominated_by: str = ""
+    value: list[float]  # reflectance or transmittance at the wavelengths of the sweep
+
+
+class ShadeSweep(Part):
+    format: Literal["formcheck-shade"] = "formcheck-shade"
+    version: int = VERSION
+    formcheck_version: str
+    file: str
+    title: str
+    varied: str = ""  # the ingredient whose amount runs; empty without a sweep
+    unit: str = ""
+    amounts: list[float] = Field(default_factory=list)
+    grounds: list[str]
+    lights: list[str]
+    observer_deg: int
+    geometry: str
+    quantity: Literal["reflectance", "transmittance"]
+    wavelength_nm: list[float]
+    wanted: Wanted | None = None
+    shades: list[SweptShade]  # ground by ground, amounts in order
+    basis: list[ColourantBasis] = Field(default_factory=list)
+    left_out: list[str] = Field(default_factory=list)
+    notes: list[str] = Field(default_factory=list)
+    deferral: str = DEFERRAL

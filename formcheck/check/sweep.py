@@ -1,0 +1,209 @@
+"""`formcheck shade`: prediction alone, for a recipe as written or along a row of amounts, as one batch."""
+
+from __future__ import annotations
+
+import os
+import re
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+from pathlib import Path
+
+import numpy as np
+
+from formcheck import __version__
+from formcheck.check.acid import acid_state, form_shares
+from formcheck.check.colourants import colourants_of
+from formcheck.check.parts import Parts, parts_of
+from formcheck.check.prediction_model import Model, inputs_of, prediction_model
+from formcheck.check.record import Swatch, UnderLight, Wanted
+from formcheck.check.record_sweep import ShadeSweep, SweptShade
+from formcheck.check.setting import Viewing, viewing_of
+from formcheck.check.shade import basis_with_shares, contrast_ratios, dominant, left_out, swatches_of, why_not
+from formcheck.check.volumes import FilmState, film_state
+from formcheck.colour.cielab import lab
+from formcheck.colour.difference import delta_e_2000, difference_words
+from formcheck.colour.grounds import ground_names
+from formcheck.colour.tristimulus import white_point, xyz
+from formcheck.colour.uncertainty import Propagated, difference_spread, probability_within, propagate
+from formcheck.recipe.batch import Batch, Varied, build_batch, with_amounts
+from formcheck.recipe.model import SpectrumReference
+from formcheck.recipe.read import WrittenRecipe, read_recipe
+from formcheck.spectra.grid import WAVELENGTH_NM
+from formcheck.trouble import suggestion, trouble
+from formcheck.units import UNITS, UnitKind, known_units, parse_amount
+
+MOST_STEPS = 2000
+USUAL_STEPS = 11
+VARIED = re.compile(r"\s*(.+?)\s*=\s*(\S.*?)\s*\.\.\s*(\S.*?)\s*")
+NUMBER = re.compile(r"[-+]?[\d.]+(?:[eE][-+]?\d+)?")
+EXPECTED = "'INGREDIENT=from..to' with a unit, such as 'harbour blue paste=2 % w/w..12 % w/w'"
+
+
+@dataclass(frozen=True)
+class Row:
+    """The amounts that one ingredient runs through, in the unit as written."""
+
+    name: str
+    line: int
+    kind: UnitKind
+    unit: str
+    amounts: np.ndarray
+
+
+def sweep_shades(path: Path, *, vary: str | None = None, steps: int = USUAL_STEPS, grounds: Sequence[str] = (),
+                 lights: Sequence[str] = (), shelf_folder: Path | None = None) -> ShadeSweep:
+    """Shades of a recipe file on every ground named (its own where none is), under every light named.
+
+    Raises
+    ------
+    InputError
+        the recipe cannot be used or its shade not be told; no such ingredient, ground or light; amounts
+        that cannot be.
+    """
+    written = _looked_at(read_recipe(path), lights=lights)
+    batch = build_batch([written], shelf_folder=shelf_folder)
+    row = _row(vary, steps, batch) if vary else None
+    if row:
+        factor = UNITS[row.unit][1]
+        batch = with_amounts(batch, [Varied(row.line, row.kind, row.amounts * factor)])
+    shelf = batch.shelves[0]
+    parts = parts_of(shelf, batch.materials)
+    film = film_state(batch, parts, shelf)
+    return _swept(written, batch, parts, film, row, grounds or [""])
+
+
+def _looked_at(written: WrittenRecipe, *, lights: Sequence[str] = (), ground: str = "") -> WrittenRecipe:
+    """The recipe under other lights or on another ground than it names."""
+    update: dict[str, object] = {"lights": list(lights)} if lights else {}
+    if ground:
+        update["ground"] = ground if ground in ground_names() else _ground_of_file(ground, written.folder)
+    return replace(written, recipe=written.recipe.model_copy(update=update)) if update else written
+
+
+def _ground_of_file(name: str, folder: Path) -> SpectrumReference | str:
+    """A ground given on the command line by the file of its reflectance; other words stay names."""
+    return SpectrumReference(spectrum=os.path.relpath(name, folder)) if Path(name).suffix else name
+
+
+def _row(vary: str, steps: int, batch: Batch) -> Row:
+    match = VARIED.fullmatch(vary)
+    if not match:
+        raise trouble("--vary", repr(vary[:60]), EXPECTED)
+    name, first, last = match.groups()
+    if not 2 <= steps <= MOST_STEPS:
+        raise trouble("--steps", str(steps), f"a whole number from 2 to {MOST_STEPS}")
+    lines = batch.lines[0]
+    named = [n for n, line in enumerate(lines)
+             if name.casefold() in (line.name.casefold(), batch.found[line.material].material.id)]
+    if not named:
+        raise trouble("--vary", f"the ingredient {name[:60]!r}", suggestion(name[:60], [line.name for line in lines]))
+    unit_last = NUMBER.sub("", last, count=1).strip()
+    if not NUMBER.sub("", first, count=1).strip():
+        first = f"{first} {unit_last}"
+    return _row_of(name, named[0], first, last)(steps)
+
+
+def _row_of(name: str, line: int, first: str, last: str):
+    """From two amounts in one unit to a row of any length."""
+    kinds: tuple[UnitKind, ...] = ("mass", "volume", "mass_fraction", "volume_fraction", "parts", "mass_per_volume")
+    try:
+        low, high = parse_amount(first, *kinds), parse_amount(last, *kinds)
+    except ValueError as error:
+        found, _, expected = str(error).partition("|")
+        raise trouble("--vary", found, expected or EXPECTED) from None
+    if low.kind != high.kind:
+        raise trouble("--vary", f"{first!r} to {last!r}", "two amounts in one unit")
+    unit = next(one for one in known_units(high.kind) if last.replace(" ", "").endswith(one.replace(" ", "")))
+    factor = UNITS[unit][1]
+    return lambda steps: Row(name, line, high.kind, unit, np.linspace(low.value / factor, high.value / factor, steps))
+
+
+def _swept(written: WrittenRecipe, batch: Batch, parts: Parts, film: FilmState, row: Row | None,
+           grounds: Sequence[str]) -> ShadeSweep:
+    n = len(batch.mass_fraction)
+    acids = [acid_state(batch, batch.shelves[0], r) for r in range(n)]
+    present = (parts.fractions(batch.mass_fraction) != 0).any(axis=0)
+    known = colourants_of(parts, present)
+    seen: dict[str, list[Viewing]] = {}
+    for name in grounds:
+        one = _looked_at(written, ground=name)
+        viewings = [viewing_of(one, parts, film, r) for r in range(n)]
+        for r, viewing in enumerate(viewings):
+            share = form_shares(parts, present, acids[r])
+            reason = why_not(batch, film, viewing, known, share, parts.fractions(batch.mass_fraction)[r], r)
+            if reason:
+                at = f" at {row.amounts[r]:g} {row.unit}" if row else ""
+                raise trouble(written.document.file, f"a shade that cannot be told{at}: {reason}",
+                              "what is named, on the recipe or on the record")
+        seen[viewings[0].ground_name] = viewings
+    first = next(iter(seen.values()))[0]
+    model = prediction_model(batch, parts, film, acids[0], first, known, 0)
+    shades = [shade for name, viewings in seen.items()
+              for shade in _on_ground(name, viewings, model, batch, parts, film, acids, known, row)]
+    wanted = None
+    if first.wanted_lab is not None:
+        wanted = Wanted(swatch=_swatch(first.wanted_lab, first), light=first.lights[0],
+                        observer_deg=first.observer_deg, tolerance_de00=first.tolerance)
+    return ShadeSweep(
+        formcheck_version=__version__, file=written.document.file, title=written.recipe.title,
+        varied=row.name if row else "", unit=row.unit if row else "", amounts=row.amounts.tolist() if row else [],
+        grounds=list(seen), lights=list(first.lights), observer_deg=first.observer_deg, geometry=first.geometry,
+        quantity="transmittance" if first.setting and first.setting.path_length_cm is not None else "reflectance",
+        wavelength_nm=WAVELENGTH_NM.tolist(), wanted=wanted, shades=shades,
+        basis=basis_with_shares(known, form_shares(parts, present, acids[0]) if not row else {}, parts),
+        left_out=left_out(model, first, known, parts, batch, 0), notes=list(batch.notes[0]))
+
+
+def _on_ground(name: str, viewings: Sequence[Viewing], model: Model, batch: Batch, parts: Parts, film: FilmState,
+               acids, known, row: Row | None) -> list[SweptShade]:
+    """All amounts on one ground at once."""
+    first = viewings[0]
+    setting, light, observer = first.setting, first.lights[0], first.observer_deg
+    assert setting is not None
+    inputs = [inputs_of(batch, viewing, known, acids[r], film, r) for r, viewing in enumerate(viewings)]
+    value, sd, lower = (np.stack([getattr(one, field) for one in inputs]) for field in ("value", "sd", "lower"))
+
+    def labs(rows: np.ndarray) -> np.ndarray:
+        return lab(xyz(model.spectra(rows, setting), light, observer), white_point(light, observer))
+
+    moved = propagate(labs, value, sd, lower=lower)
+    spectra = model.spectra(value, setting)
+    under = _under_lights(spectra, first)
+    contrast = contrast_ratios(model, first, value) if setting.ground is not None else [None] * len(value)
+    against = _against(moved, first)
+    swatches = swatches_of(moved.value, light, observer)
+    return [SweptShade(
+        amount=float(row.amounts[r]) if row else None, ground=name, swatch=swatches[r],
+        lab_sd=(float(moved.sd[r, 0]), float(moved.sd[r, 1]), float(moved.sd[r, 2])), lights=under[r],
+        contrast_ratio=contrast[r], dominated_by=dominant(moved.share_total[r], inputs[r].label),
+        value=spectra[r].tolist(), **against[r]) for r in range(len(value))]
+
+
+def _under_lights(spectra: np.ndarray, viewing: Viewing) -> list[list[UnderLight]]:
+    """For every spectrum, its shade under every light."""
+    observer = viewing.observer_deg
+    labs = [lab(xyz(spectra, light, observer), white_point(light, observer)) for light in viewing.lights]
+    swatches = [swatches_of(one, light, observer) for one, light in zip(labs, viewing.lights, strict=True)]
+    changes = [delta_e_2000(labs[0], one) for one in labs]
+    return [[UnderLight(light=light, swatch=swatches[n][r], de00_from_first=float(changes[n][r]))
+             for n, light in enumerate(viewing.lights)] for r in range(len(spectra))]
+
+
+def _against(moved: Propagated, viewing: Viewing) -> list[dict]:
+    """Difference from the wanted shade of every amount; nothing where none is wanted."""
+    n = len(moved.value)
+    if viewing.wanted_lab is None:
+        return [{} for _ in range(n)]
+    target = np.broadcast_to(np.array(viewing.wanted_lab), (n, 3))
+    de00 = delta_e_2000(moved.value, target)
+    spread = difference_spread(moved.value, moved.covariance, target)[1]
+    tolerance = viewing.tolerance
+    within = None if tolerance is None else probability_within(moved.value, moved.covariance, target,
+                                                               np.full(n, tolerance))
+    words = [difference_words(one, shade) for one, shade in zip(target, moved.value, strict=True)]
+    return [{"de00": float(de00[r]), "de00_sd": float(spread[r]), "difference_words": words[r],
+             "probability_within": None if within is None else float(within[r])} for r in range(n)]
+
+
+def _swatch(shade, viewing: Viewing) -> Swatch:
+    return swatches_of(np.array([shade]), viewing.lights[0], viewing.observer_deg)[0]

@@ -1,0 +1,108 @@
+"""`formcheck shade` in the terminal: a strip of swatches and a table for every ground."""
+
+from __future__ import annotations
+
+from rich.console import Console
+from rich.text import Text
+
+from formcheck.check.record_sweep import ShadeSweep, SweptShade
+from formcheck.report.numbers import plain, probability, with_sd
+from formcheck.report.shade_words import coordinate, observer_text
+from formcheck.report.terminal_parts import colour_warning, heading, labelled, paragraph, speaking, strip, table
+from formcheck.report.words import clean, hex_colour, one_line, unit_text
+
+STRIP_WIDTH, STRIP_HEIGHT = 60, 3
+
+
+def show_sweep(sweep: ShadeSweep, console: Console | None = None) -> None:
+    """Print one ShadeSweep to a rich Console (standard output when none is given)."""
+    with speaking(console) as out:
+        out.print(Text(one_line(sweep.title), style="bold"))
+        labelled(out, head_rows(sweep), indent=0)
+        for ground in sweep.grounds:
+            _show_ground(out, sweep, ground)
+        _show_list(out, "Left out", sweep.left_out)
+        _show_list(out, "Notes", sweep.notes)
+        warning = colour_warning(out)
+        if warning:
+            paragraph(out, warning, indent=0)
+        out.print()
+        out.print(Text(clean(sweep.deferral)))
+
+
+def head_rows(sweep: ShadeSweep) -> list[tuple[str, str]]:
+    """What was asked, as label and text; the page shows the same."""
+    rows = [("file", one_line(sweep.file)), ("seen under", observer_text(sweep.lights[0], sweep.observer_deg))]
+    if sweep.varied:
+        span = f"{plain(sweep.amounts[0])} to {plain(sweep.amounts[-1])} {sweep.unit}"
+        rows.append(("varied", f"{one_line(sweep.varied)}, {span} in {len(sweep.amounts)} steps"))
+    if sweep.wanted:
+        lab = ", ".join(coordinate(value) for value in sweep.wanted.swatch.lab)
+        rows.append(("wanted", f"{hex_colour(sweep.wanted.swatch) or 'no colour'}, L*a*b* {lab}"))
+    return rows
+
+
+def columns_of(sweep: ShadeSweep) -> list[str]:
+    """Headings of the table; those that no shade fills are left out."""
+    names = [f"{one_line(sweep.varied)}, {sweep.unit}"] if sweep.varied else []
+    names += ["hex", "L*", "a*", "b*"]
+    if sweep.wanted:
+        names += ["ΔE00", "within"] if sweep.wanted.tolerance_de00 is not None else ["ΔE00"]
+    if any(one.contrast_ratio is not None for one in sweep.shades):
+        names.append("contrast")
+    return names + [f"ΔE00 to {light}" for light in sweep.lights[1:]]
+
+
+def cells_of(sweep: ShadeSweep, one: SweptShade) -> list[str]:
+    """One shade as texts under `columns_of`."""
+    cells = [plain(one.amount)] if sweep.varied else []
+    cells.append(hex_colour(one.swatch) or "none")
+    cells += [with_sd(value, sd) for value, sd in zip(one.swatch.lab, one.lab_sd, strict=True)]
+    if sweep.wanted:
+        cells.append(with_sd(one.de00, one.de00_sd))
+        if sweep.wanted.tolerance_de00 is not None:
+            cells.append("" if one.probability_within is None else probability(one.probability_within))
+    if any(other.contrast_ratio is not None for other in sweep.shades):
+        cells.append(plain(one.contrast_ratio))
+    return cells + [plain(light.de00_from_first, 2) for light in one.lights[1:]]
+
+
+def brief_columns(sweep: ShadeSweep) -> list[str]:
+    """What 80 columns hold beside the hex value; JSON and page hold the rest."""
+    names = [unit_text(sweep.unit)] if sweep.varied else []
+    names += ["L*", "a*", "b*", "±"]
+    if sweep.wanted:
+        names += ["ΔE00", "within"] if sweep.wanted.tolerance_de00 is not None else ["ΔE00"]
+    return names + (["contrast"] if any(one.contrast_ratio is not None for one in sweep.shades) else [])
+
+
+def brief_cells(sweep: ShadeSweep, one: SweptShade) -> list[str]:
+    """One shade under the hex value and `brief_columns`; ± is the largest of the three deviations."""
+    cells = [hex_colour(one.swatch) or "none", *([plain(one.amount)] if sweep.varied else [])]
+    cells += [f"{value:.1f}".replace("-", "−") for value in one.swatch.lab]
+    cells.append(plain(max(one.lab_sd), 2))
+    if sweep.wanted:
+        cells.append(plain(one.de00, 2))
+        if sweep.wanted.tolerance_de00 is not None:
+            cells.append("" if one.probability_within is None else probability(one.probability_within))
+    if any(other.contrast_ratio is not None for other in sweep.shades):
+        cells.append(plain(one.contrast_ratio))
+    return cells
+
+
+def _show_ground(console: Console, sweep: ShadeSweep, ground: str) -> None:
+    shades = [one for one in sweep.shades if one.ground == ground]
+    heading(console, one_line(ground))
+    strip(console, [hex_colour(one.swatch) for one in shades], width=STRIP_WIDTH, height=STRIP_HEIGHT)
+    columns: list[str | tuple[str, str]] = [("hex", "whole"), *((name, "right") for name in brief_columns(sweep))]
+    table(console, columns, [brief_cells(sweep, one) for one in shades])
+    surest = max(shades, key=lambda one: sum(one.lab_sd))
+    if surest.dominated_by:
+        labelled(console, [("least sure of", one_line(surest.dominated_by))])
+
+
+def _show_list(console: Console, title: str, lines: list[str]) -> None:
+    if lines:
+        heading(console, title)
+        for line in lines:
+            paragraph(console, one_line(line))
