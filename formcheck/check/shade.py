@@ -43,7 +43,7 @@ def why_not(batch: Batch, film: FilmState, viewing: Viewing, known: Colourants, 
     if viewing.reason:
         reasons.append(viewing.reason)
     if np.isnan(fractions).any():
-        reasons.append("amounts are unknown: " + "; ".join(one.why for one in batch.reasons[r]))
+        reasons.append("amounts are unknown: " + "; ".join(dict.fromkeys(one.why for one in batch.reasons[r])))
     elif np.isnan(film.density_g_ml.value[r]):
         reasons.append(f"the density of the mixture is unknown: {film.density_g_ml.reasons[r]}")
     if known.pigments and viewing.setting and viewing.setting.path_length_cm is not None:
