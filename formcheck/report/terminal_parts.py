@@ -5,17 +5,19 @@ Text goes in as `Text`, never as markup, so that nothing a user wrote is taken f
 
 from __future__ import annotations
 
+import textwrap
 from collections.abc import Iterable, Iterator, Sequence
 from contextlib import contextmanager
 
+from rich.cells import cell_len
 from rich.console import Console
-from rich.padding import Padding
-from rich.table import Table
 from rich.text import Text
 
 from formcheck.check.record import Grade
 from formcheck.report.words import clean
 
+LEAST_WIDTH = 12  # cells of text, however narrow the terminal
+LEAST_COLUMN, GAP, TABLE_INDENT = 4, 2, 2
 GRADE_STYLES: dict[Grade, str] = {"stop": "bold red", "hold": "bold magenta", "care": "bold",
                                   "note": "bold", "unknown": "bold"}
 # For terminals and pipes that cannot carry these signs.
@@ -50,34 +52,91 @@ def heading(console: Console, text: str, beside: str = "") -> None:
 
 
 def paragraph(console: Console, text: str, *, indent: int = 2, style: str = "") -> None:
-    console.print(Padding(Text(clean(text), style=style), (0, 0, 0, indent), expand=False))
+    lines = wrapped(clean(text), console.width - indent)
+    _print_lines(console, [Text(" " * indent + line, style=style) for line in lines])
+
+
+def wrapped(text: str, width: int) -> list[str]:
+    """Lines of at most `width` cells; words too long for one are folded. At least one line.
+
+    A page of findings has hundreds of these: rich's own layout takes ten times as long over them.
+    """
+    width = max(width, LEAST_COLUMN)
+    if cell_len(text) != len(text):  # wide signs: leave the counting to rich
+        whole = Text(text).wrap(Console(width=width), width)
+        return [line.plain.rstrip() for line in whole] or [""]
+    lines = [line for part in text.splitlines()
+             for line in textwrap.wrap(part, width, break_on_hyphens=False) or [""]]
+    return lines or [""]
+
+
+def _print_lines(console: Console, lines: Sequence[Text]) -> None:
+    console.print(Text("\n").join(lines), soft_wrap=True)
 
 
 def labelled(console: Console, rows: Iterable[tuple[str, str]], *, indent: int = 2,
              width: int | None = None) -> None:
     """Label and text, the text hanging clear of the labels. Long names such as paths fold, not vanish."""
-    rows = list(rows)
+    rows = [(clean(label), clean(text)) for label, text in rows]
     if not rows:
         return
-    grid = Table.grid(padding=(0, 1, 0, 0))
-    grid.add_column(width=width or max(len(label) for label, _ in rows), no_wrap=width is not None)
-    grid.add_column(overflow="fold")
+    wide = width or max(cell_len(label) for label, _ in rows)
+    lines = []
     for label, text in rows:
-        grid.add_row(Text(clean(label)), Text(clean(text)))
-    console.print(Padding(grid, (0, 0, 0, indent), expand=False))
+        labels = wrapped(label, max(wide, cell_len(label) if wide < LEAST_WIDTH else wide))
+        texts = wrapped(text, console.width - indent - wide - 1)
+        for n in range(max(len(labels), len(texts))):
+            left, right = labels[n] if n < len(labels) else "", texts[n] if n < len(texts) else ""
+            lines.append(Text(f"{' ' * indent}{left}{' ' * (wide - cell_len(left))} {right}".rstrip()))
+    _print_lines(console, lines)
 
 
 def table(console: Console, columns: Sequence[str | tuple[str, str]],
           rows: Iterable[Sequence[str | Text]]) -> None:
     """A plain table; a column given as (name, "right") is set flush right, as (name, "whole") kept whole."""
-    drawn = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), header_style="underline", show_edge=False)
-    for column in columns:
-        name, justify = (column, "left") if isinstance(column, str) else column
-        drawn.add_column(name, justify="right" if justify == "right" else "left", overflow="fold",
-                         no_wrap=justify == "whole")
-    for row in rows:
-        drawn.add_row(*(cell if isinstance(cell, Text) else Text(clean(cell)) for cell in row))
-    console.print(Padding(drawn, (0, 0, 0, 2), expand=False))
+    names = [column if isinstance(column, str) else column[0] for column in columns]
+    kinds = ["left" if isinstance(column, str) else column[1] for column in columns]
+    cells = [[cell if isinstance(cell, Text) else clean(cell) for cell in row] for row in rows]
+    widths = _column_widths(names, kinds, cells, console.width - TABLE_INDENT)
+    lines = _row_lines([Text(name) for name in names], kinds, widths, style="underline")
+    for row in cells:
+        lines += _row_lines(row, kinds, widths)
+    _print_lines(console, lines)
+
+
+def _column_widths(names: Sequence[str], kinds: Sequence[str], cells: Sequence[Sequence[str | Text]],
+                   width: int) -> list[int]:
+    """As wide as the longest cell; the widest columns that may fold give way until all fit."""
+    widths = [max([cell_len(name), *(cell_len(str(row[n])) for row in cells)]) for n, name in enumerate(names)]
+    while sum(widths) + GAP * (len(widths) - 1) > width:
+        able = [n for n, kind in enumerate(kinds) if kind != "whole" and widths[n] > LEAST_COLUMN]
+        if not able:
+            break
+        widths[max(able, key=lambda n: widths[n])] -= 1
+    return widths
+
+
+def _row_lines(row: Sequence[str | Text], kinds: Sequence[str], widths: Sequence[int], *,
+               style: str = "") -> list[Text]:
+    """One row as lines of text, its cells folded to their widths."""
+    folded = [_folded(cell, width, style) for cell, width in zip(row, widths, strict=True)]
+    lines = []
+    for n in range(max(len(cell) for cell in folded)):
+        line = Text(" " * TABLE_INDENT)
+        for place, (cell, kind, width) in enumerate(zip(folded, kinds, widths, strict=True)):
+            part = cell[n] if n < len(cell) else Text("")
+            space = " " * (width - cell_len(part.plain))
+            line.append(" " * GAP if place else "")
+            line.append_text(Text(space) + part if kind == "right" else part + Text(space))
+        line.rstrip()
+        lines.append(line)
+    return lines
+
+
+def _folded(cell: str | Text, width: int, style: str) -> list[Text]:
+    if isinstance(cell, Text) and not style:
+        return [cell]  # a swatch keeps its colours and its length
+    return [Text(line, style=style) for line in wrapped(str(cell), width)]
 
 
 def shows_colour(console: Console) -> bool:
