@@ -19,14 +19,14 @@ from formcheck.spectra.bands import (
     statistics,
 )
 from formcheck.spectra.boxes import box_bands
-from formcheck.spectra.files import read_k_and_s, read_spectrum_csv
+from formcheck.spectra.files import MeasuredSpectrum, read_k_and_s, read_spectrum
 from formcheck.spectra.grid import resample
+from formcheck.spectra.ranges import held_beyond
 from formcheck.trouble import trouble
 
 # Wider than what is seen, so that a band whose position is unsure may move in from beyond.
 WIDE_NM = np.arange(160.0, 1001.0, 5.0)
 COLOURING_KINDS = ("pigment", "dye", "indicator", "metal_powder")
-VISIBLE_NM = (400.0, 700.0)
 UNSEEN_SHARE = 0.002  # of a form whose spectrum is unknown: less than this is not seen
 
 
@@ -64,7 +64,7 @@ class Colourants:
     missing: dict[int, str] = field(default_factory=dict)
     missing_forms: dict[tuple[int, int], str] = field(default_factory=dict)
     fluorescent: list[str] = field(default_factory=list)
-    held: list[str] = field(default_factory=list)  # spectra that end within the visible, held from there
+    held: list[str] = field(default_factory=list)  # what is to be said of spectra: where they end, and their notes
 
 
 def colourants_of(parts: Parts, present: np.ndarray) -> Colourants:
@@ -161,14 +161,26 @@ def _absorber(c: int, number: int, band, name: str) -> Absorber:
 
 def _measured_epsilon(known: Colourants, found: Found, record: SpectrumFile) -> np.ndarray:
     path = data_file(found, record.file)
-    spectrum = read_spectrum_csv(path, column=record.column)
-    values, _ = resample(spectrum.wavelength_nm, spectrum.values, WIDE_NM)
-    known.held += held_beyond(f"the spectrum of {found.material.names[0]}", spectrum.wavelength_nm)
+    spectrum = read_spectrum(path, column=record.column, scale=record.scale, quantity=record.quantity)
+    values, _ = resample(spectrum.wavelength_nm, _absorption(spectrum), WIDE_NM)
+    what = f"the spectrum of {found.material.names[0]}"
+    known.held += [f"{what}: {note}" for note in spectrum.notes] + held_beyond(what, spectrum.wavelength_nm)
     factor = _to_epsilon(found.material, record)
     if factor is None:
         raise trouble(str(path), f"a spectrum of {record.quantity} without what turns it into epsilon",
                       "`concentration_g_l` and `path_length_cm` with absorbance, and a molar mass")
     return np.maximum(values * factor, 0.0)
+
+
+def _absorption(spectrum: MeasuredSpectrum) -> np.ndarray:
+    """The values of a spectrum; of a transmittance its absorbance, -lg T."""
+    if spectrum.quantity != "transmittance":
+        return spectrum.values
+    if (spectrum.values <= 0).any():
+        nm = spectrum.wavelength_nm[np.argmax(spectrum.values <= 0)]
+        raise trouble(spectrum.file, f"a transmittance of 0 or less at {nm:g} nm, which is no absorbance",
+                      "a transmittance above 0, from a solution dilute enough to let light through")
+    return -np.log10(spectrum.values)
 
 
 def _to_epsilon(material: Material, record: SpectrumFile) -> float | None:
@@ -183,13 +195,6 @@ def _to_epsilon(material: Material, record: SpectrumFile) -> float | None:
     if record.concentration_g_l is None or record.path_length_cm is None:
         return None
     return molar_mass / (record.concentration_g_l * record.path_length_cm)
-
-
-def held_beyond(what: str, wavelength_nm: np.ndarray) -> list[str]:
-    """What to say of a spectrum that does not reach over the visible; nothing where it does."""
-    first, last = float(wavelength_nm[0]), float(wavelength_nm[-1])
-    gaps = [f"below {first:g} nm"] * (first > VISIBLE_NM[0]) + [f"above {last:g} nm"] * (last < VISIBLE_NM[1])
-    return [f"{what} {' and '.join(gaps)}: the end value is held there"] if gaps else []
 
 
 def missing_reasons(known: Colourants, form_share: dict[int, np.ndarray | None]) -> list[str]:

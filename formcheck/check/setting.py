@@ -6,7 +6,6 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from formcheck.check.colourants import held_beyond
 from formcheck.check.parts import Parts
 from formcheck.check.predict import Setting
 from formcheck.check.volumes import FilmState, wet_film_um
@@ -15,10 +14,12 @@ from formcheck.colour.grounds import ground, ground_names, ground_record
 from formcheck.colour.lights import light_name
 from formcheck.colour.tristimulus import white_point, xyz
 from formcheck.documents import FieldPath, path_text
-from formcheck.recipe.model import SpectrumReference
+from formcheck.recipe.model import SpectrumReference, Wanted
 from formcheck.recipe.read import WrittenRecipe
-from formcheck.spectra.files import read_spectrum_csv
+from formcheck.spectra.files import MeasuredSpectrum, read_spectrum
 from formcheck.spectra.grid import resample
+from formcheck.spectra.ranges import held_beyond
+from formcheck.spectra.scale import ScaleNotSettled
 from formcheck.trouble import InputError, Problem, shown, suggestion
 
 USUAL_INDEX = 1.5  # of organic binders (common practice)
@@ -49,12 +50,12 @@ def viewing_of(written: WrittenRecipe, parts: Parts, film: FilmState, r: int = 0
     lights = _lights(written)
     wanted = recipe.wanted
     observer = wanted.observer or recipe.observer if wanted else recipe.observer
-    wanted_lab = _wanted_lab(written, lights[0], observer)
+    wanted_lab, wanted_notes = _wanted_lab(written, lights[0], observer)
     tolerance = wanted.tolerance if wanted else None
 
     def seen(setting: Setting | None, *, wet=0.0, sd=0.0, ground_name="", geometry="", notes=(), reason=""):
         return Viewing(setting, wet, sd, ground_name, geometry, lights, observer, wanted_lab, tolerance,
-                       tuple(notes), reason)
+                       (*wanted_notes, *notes), reason)
 
     if recipe.what in SOLUTIONS and recipe.film is None:
         path = recipe.path_length_cm
@@ -97,24 +98,26 @@ def _lights(written: WrittenRecipe) -> tuple[str, ...]:
     return tuple(dict.fromkeys(found))
 
 
-def _wanted_lab(written: WrittenRecipe, light: str, observer: int) -> tuple[float, float, float] | None:
+def _wanted_lab(written: WrittenRecipe, light: str, observer: int
+                ) -> tuple[tuple[float, float, float] | None, list[str]]:
+    """CIELAB of the wanted shade, and what to say of the spectrum it comes from."""
     wanted = written.recipe.wanted
     if wanted is None:
-        return None
+        return None, []
     if wanted.lab is not None:
-        return wanted.lab[0], wanted.lab[1], wanted.lab[2]
-    assert wanted.spectrum is not None
-    values, _ = _measured(written, wanted.spectrum, wanted.column, ("wanted", "spectrum"))
+        return (wanted.lab[0], wanted.lab[1], wanted.lab[2]), []
+    _, values, notes = _measured(written, wanted, "wanted")
     found = lab(xyz(values, light, observer), white_point(light, observer))
-    return float(found[0]), float(found[1]), float(found[2])
+    return (float(found[0]), float(found[1]), float(found[2])), notes
 
 
 def _ground(written: WrittenRecipe) -> tuple[str, np.ndarray, bool, bool | None, list[str]]:
     """(name, reflectance, measured in air, with the mirror reflection or None as the recipe says, notes)."""
     ground_said = written.recipe.ground
     if isinstance(ground_said, SpectrumReference):
-        values, notes = _measured(written, ground_said.spectrum, ground_said.column, ("ground", "spectrum"))
-        return f"the ground of {ground_said.spectrum}", values, True, None, notes
+        spectrum, values, notes = _measured(written, ground_said, "ground")
+        name = f"the ground of {ground_said.spectrum}"
+        return name, np.minimum(values, 1.0), True, spectrum.specular_included, notes
     name = str(ground_said)
     if name not in ground_names():
         raise _wrong(written, ("ground",), shown(name), suggestion(name, ground_names())
@@ -123,16 +126,19 @@ def _ground(written: WrittenRecipe) -> tuple[str, np.ndarray, bool, bool | None,
     return name, ground(name), record.measured_in_air, record.specular_included, []
 
 
-def _measured(written: WrittenRecipe, file: str, column: str | None, place: FieldPath
-              ) -> tuple[np.ndarray, list[str]]:
-    """A measured reflectance on the grid, as a fraction, and what to say of its range."""
-    path = written.folder / file
-    spectrum = read_spectrum_csv(path, column=column)
+def _measured(written: WrittenRecipe, said: SpectrumReference | Wanted, place: str
+              ) -> tuple[MeasuredSpectrum, np.ndarray, list[str]]:
+    """A measured reflectance, the same on the grid as a fraction, and what to say of it."""
+    what = f"the reflectance of {said.spectrum}"
+    try:
+        spectrum = read_spectrum(written.folder / str(said.spectrum), column=said.column, scale=said.scale,
+                                 quantity="reflectance")
+    except ScaleNotSettled as error:
+        raise _wrong(written, (place, "spectrum"), f"{error.problems[0].found} (in {error.problems[0].place})",
+                     f"`scale: percent` or `scale: fraction` beside `spectrum: {said.spectrum}`") from None
     values, _ = resample(spectrum.wavelength_nm, spectrum.values)
-    if np.nanmax(values) > 1.5 or np.nanmin(values) < -0.01:
-        raise _wrong(written, place, f"reflectance from {values.min():.3g} to {values.max():.3g} in {file}",
-                     "a reflectance as a fraction from 0 to 1 (divide percent by 100)")
-    return np.clip(values, 0.0, 1.0), held_beyond(f"the reflectance of {file}", spectrum.wavelength_nm)
+    notes = [f"{what}: {note}" for note in spectrum.notes] + held_beyond(what, spectrum.wavelength_nm)
+    return spectrum, np.maximum(values, 0.0), notes
 
 
 def _film_index(written: WrittenRecipe, parts: Parts, film: FilmState, r: int) -> tuple[float, str]:

@@ -164,12 +164,16 @@ class Box(Strict):
 
 
 class SpectrumFile(Strict):
-    """A measured spectrum beside the record: a CSV with wavelengths in nm in its first column."""
+    """A measured spectrum beside the record: CSV, CGATS.17, CxF3 or .xlsx.
+
+    `scale` says of a transmittance whether the file holds percent or a fraction, where the file does not.
+    """
 
     file: str
     column: str | None = None
-    quantity: Literal["epsilon_l_mol_cm", "absorbance", "absorptivity_l_g_cm"]
-    concentration_g_l: Positive | None = None  # of the solution, for absorbance
+    scale: Literal["percent", "fraction"] | None = None
+    quantity: Literal["epsilon_l_mol_cm", "absorbance", "absorptivity_l_g_cm", "transmittance"]
+    concentration_g_l: Positive | None = None  # of the solution, for absorbance and transmittance
     path_length_cm: Positive | None = None
     relative_sd: Annotated[float, Field(ge=0, lt=5)] | None = None
     source: str
@@ -186,12 +190,20 @@ class DyeForm(Strict):
 
 
 class KubelkaMunkFile(Strict):
-    """K and S per um of dry film for pigment alone (volume fraction 1): CSV wavelength_nm, K, S."""
+    """K and S per um of dry film for pigment alone (volume fraction 1): CSV wavelength_nm, K, S.
+
+    Those that `formcheck learn` wrote carry more: K_sd and S_sd in the file, what the panels left out were off
+    by, the surface constants they were learned with, and whether the films' thickness was known.
+    """
 
     file: str
     median_diameter_um: Positive | None = None
     relative_sd: Annotated[float, Field(ge=0, lt=5)]
     most_volume_fraction: Fraction | None = None  # beyond it crowding is outside the model
+    model_error_de00: Annotated[float, Field(ge=0, le=100)] | None = None
+    k1: Annotated[float, Field(ge=0, lt=1)] | None = None
+    k2: Annotated[float, Field(ge=0, lt=1)] | None = None
+    thickness_known: bool = True  # False: K and S hold for films that hide, and beside others learned with them
     source: str
 
 

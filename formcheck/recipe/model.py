@@ -48,6 +48,8 @@ def _one_of(words: tuple[str, ...]) -> BeforeValidator:
     return BeforeValidator(check)
 
 
+ScaleWord = Literal["percent", "fraction"]
+SpectrumScale = Annotated[ScaleWord, _one_of(get_args(ScaleWord))]
 What = Annotated[WhatWord, _one_of(get_args(WhatWord))]
 Use = Annotated[UseWord, _one_of(get_args(UseWord))]
 Act = Annotated[ActWord, _one_of(get_args(ActWord))]
@@ -109,9 +111,12 @@ class Film(Strict):
 class SpectrumReference(Strict):
     """A measured spectrum in a file beside the recipe."""
 
-    spectrum: FilePath = Field(description="Path from the recipe file to a spectrum file (CSV).")
+    spectrum: FilePath = Field(description=(
+        "Path from the recipe file to a spectrum file: CSV, CGATS.17, CxF3 or .xlsx."))
     column: str | None = Field(default=None, max_length=200, description=(
-        "Heading of the column to take, where the file has several."))
+        "Heading of the column, or name of the sample, to take, where the file has several."))
+    scale: SpectrumScale | None = Field(default=None, description=(
+        "Whether the file holds percent or a fraction of 1, where it does not say itself."))
 
 
 def _written_as(value: Any) -> str:
@@ -133,7 +138,9 @@ class Wanted(Strict):
     spectrum: FilePath | None = Field(
         default=None, description="Path from the recipe file to a spectrum file.")
     column: str | None = Field(default=None, max_length=200, description=(
-        "Heading of the column of that file, where it has several."))
+        "Heading of the column, or name of the sample, of that file, where it has several."))
+    scale: SpectrumScale | None = Field(default=None, description=(
+        "Whether that file holds percent or a fraction of 1, where it does not say itself."))
     light: Name = Field(default="D65", description="The light the shade is meant under.")
     observer: Observer | None = Field(default=None, description="2 or 10 degrees; absent: the recipe's own.")
     tolerance: Annotated[float, Field(gt=0, le=100)] | None = Field(

@@ -32,6 +32,7 @@ FIELDS: dict[str, str] = {
     "sold_in": "texts", "batch": "amount", "film.wet": "amount", "film.dry": "amount", "film.sd": "amount",
     "path_length": "amount",
     "ground": "text", "ground.spectrum": "text", "ground.column": "text",
+    "ground.scale": "word", "wanted.scale": "word",
     "wanted.lab": "numbers", "wanted.spectrum": "text", "wanted.column": "text", "wanted.light": "text",
     "wanted.observer": "number", "wanted.tolerance": "number",
     "lights": "texts", "observer": "number", "specular": "word",

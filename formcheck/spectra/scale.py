@@ -23,6 +23,10 @@ NEAR = 0.3  # in ln: how near to a factor of 100 a jump must be, and how level i
 GIVE = "`scale: percent` or `scale: fraction`, or a heading such as `reflectance (%)` or `reflectance (0 to 1)`"
 
 
+class ScaleNotSettled(InputError):
+    """Percent or fraction must be said; whoever named the file can tell where."""
+
+
 def as_fractions(written: WrittenFile, one: Written, values: np.ndarray, asked: Scale | None
                  ) -> tuple[np.ndarray, list[str]]:
     """Values as fractions, and what to say of how the scale was settled; InputError where it is not."""
@@ -36,8 +40,8 @@ def as_fractions(written: WrittenFile, one: Written, values: np.ndarray, asked: 
         most = written.highest[one.quantity]
         if most > PLAINLY_A_FRACTION:
             cell = one.values[int(np.argmax(values))]
-            raise written.refused(cell, f"values up to {most:.4g} and no word on whether they are percent or a "
-                                  "fraction", GIVE)
+            raise ScaleNotSettled(written.refused(
+                cell, f"values up to {most:.4g} and no word on whether they are percent or a fraction", GIVE).problems)
         scale = "fraction"
         notes.append(f"no unit stated: read as a fraction of 1, as no value is above {PLAINLY_A_FRACTION:g}")
     elif scale == "percent" and not asked and written.highest[one.quantity] <= PLAINLY_A_FRACTION:

@@ -216,7 +216,7 @@ def test_a_k_and_s_file_that_is_not_there(fresh):
 
 BROKEN_GROUNDS = {
     "percent": (lambda text: "wavelength_nm,reflectance\n400,80\n500,81\n600,82\n700,82\n",
-                ["divide percent by 100", f"{HARBOUR}:"]),
+                ["`scale: percent` or `scale: fraction`", f"{HARBOUR}:", "print_card.csv:4:5"]),
     "NaN": (lambda text: text.replace("0.8016", "NaN"), ["print_card.csv:4:"]),
     "text": (lambda text: text.replace("0.8016", "bright"), ["print_card.csv:4:", "'bright'"]),
     "empty": (lambda text: "", ["print_card.csv:1", "empty"]),
