@@ -185,7 +185,8 @@ def _is_organic(material: Material | None, shelf: Shelf) -> float:
     if material.kind == "water" or {"carbonate", "cyanide_complex"} & set(material.groups):
         return 0.0
     made_of = material.elements.only if material.elements else None
-    if "organic_solvent" in material.groups or (made_of and "C" in made_of):  # how much carbon may be untold
+    by_name = material.kind == "solvent" or "organic_solvent" in material.groups
+    if by_name or (made_of and "C" in made_of):  # how much carbon it holds may be untold
         return 1.0
     low, high, _ = element_bounds(shelf, material, "C")
     return 1.0 if low > 0 else 0.0 if high == 0 else np.nan
