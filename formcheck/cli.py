@@ -3,6 +3,8 @@
 import gc
 import os
 import sys
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
 from datetime import date
 from io import TextIOWrapper
 from pathlib import Path
@@ -110,6 +112,33 @@ def estimate(
         from formcheck.report.estimate import estimate_html
 
         write_text(page, estimate_html(record))
+        _say(f"wrote {page}")
+
+
+@app.command()
+def learn(
+    file: Annotated[Path, typer.Argument(help="A file of measured drawdowns, or of a dilution series.",
+                                         show_default=False)],
+    out: Annotated[Path | None, typer.Option("--out", metavar="FILE",
+                                             help="Write the material record here, others beside it.")] = None,
+    shelf: ShelfFolder = None, json: Json = False, page: Page = None,
+) -> None:
+    """From measured drawdowns or solutions to a material record, and how far off it tends to be."""
+    from formcheck.check.learn import learn_file
+
+    with _progress_bar() as told:
+        record = learn_file(file, out=out, shelf_folder=shelf, progress=told)
+    if json:
+        _print_utf_8(record.model_dump_json(indent=1))
+    else:
+        from formcheck.report.learned import show_learned
+
+        show_learned(record)
+    if page:
+        from formcheck.files_out import write_text
+        from formcheck.report.learned_page import learned_html
+
+        write_text(page, learned_html(record))
         _say(f"wrote {page}")
 
 
@@ -227,6 +256,17 @@ def _print_utf_8(text: str) -> None:
 
 def _complain(error: InputError) -> None:
     print(f"formcheck cannot use this input:\n{error}", file=sys.stderr)
+
+
+@contextmanager
+def _progress_bar() -> Iterator[Callable[[str, int, int], None]]:
+    """A bar on standard error for what takes a while; nothing where nobody watches."""
+    from rich.console import Console
+    from rich.progress import Progress
+
+    with Progress(console=Console(stderr=True), transient=True, disable=not sys.stderr.isatty()) as bar:
+        task = bar.add_task("", total=None)
+        yield lambda what, done, of: bar.update(task, description=what, completed=done, total=of)
 
 
 def _say(text: str) -> None:
