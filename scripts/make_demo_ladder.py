@@ -13,8 +13,8 @@ import numpy as np
 
 sys.path.insert(0, str(Path(__file__).resolve().parent.parent))
 
-from formcheck.colour import kubelka_munk, saunderson  # noqa: E402
-from formcheck.documents import read_yaml  # noqa: E402
+from formcheck.colour import kubelka_munk, saunderson
+from formcheck.documents import read_yaml
 
 FOLDER = Path(__file__).resolve().parent.parent / "demo_formulations" / "ladder"
 NM = np.arange(400.0, 701.0, 10.0)

@@ -75,7 +75,7 @@ def learn_ladder(written: WrittenLadder, *, file: str, progress: Progress = lamb
         de00_left_out_p90=float(np.percentile(known, 90)) if known else None,
         model_error_de00=_model_error(panels, off), condition=float(np.median(learned.condition)),
         doubts=ladder_doubts(learned, written.file.colourants, [one.name for one in panels], left_out=off,
-                             without_black=_without_black(written, learned)),
+                             relief=[one.relief for one in left_out], without_black=_without_black(written, learned)),
         notes=[*_surface_note(learned, panels, assumed), *_spread_notes(learned), *_density_notes(written),
                *written.notes],
         sources=[Cited(cite=_source(written)["cite"], kind=_source(written)["kind"])])

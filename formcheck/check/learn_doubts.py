@@ -15,20 +15,22 @@ POORLY_KNOWN = 0.3  # relative sd of the greater of K and S
 ILL_CONDITIONED = 100.0  # condition number; above 30 is strong dependence (Belsley, Kuh & Welsch 1980)
 DARK_INSIDE = 0.2  # reflectance inside a tint where it absorbs most; K/S is 1.6 there
 GROUND_SHOWS = 0.02  # of reflectance inside, from black to white ground: a contrast ratio near 0.98
-APART, APART_DE00 = 3.0, 3.0  # times the median, and at least: a panel unlike the others
+APART_DE00, RELIEF = 2.0, 0.6  # a panel so far off, without which the others agree so much better
 WORSE_DE00 = 1.0
 
 
 def ladder_doubts(learned: LearnedLadder, colourants: Sequence[Colourant], panels: Sequence[str], *,
-                  left_out: Sequence[float | None], without_black: float | None) -> list[Doubt]:
+                  left_out: Sequence[float | None], relief: Sequence[float], without_black: float | None
+                  ) -> list[Doubt]:
     """Every warning of a ladder.
 
-    left_out (panels): DE00 of each reckoned from the others; without_black: median DE00 of the mixes
+    left_out (panels): DE00 of each reckoned from the others, and relief what the others gain by that;
+    without_black: median DE00 of the mixes
     with black reckoned from panels without, None where there are none.
     """
     return [*_thickness(learned, panels), *_surface(learned), *_conditioning(learned, colourants),
             *_pale_tints(learned, colourants), *_black(learned, colourants, without_black),
-            *_apart(panels, left_out)]
+            *_apart(panels, left_out, relief)]
 
 
 def _thickness(learned: LearnedLadder, panels: Sequence[str]) -> list[Doubt]:
@@ -119,17 +121,17 @@ def _black(learned: LearnedLadder, colourants: Sequence[Colourant], without_blac
     return []
 
 
-def _apart(panels: Sequence[str], left_out: Sequence[float | None]) -> list[Doubt]:
-    known = [one for one in left_out if one is not None]
-    if len(known) < 4:
+def _apart(panels: Sequence[str], left_out: Sequence[float | None], relief: Sequence[float]) -> list[Doubt]:
+    """The one panel that the others agree without."""
+    n = int(np.argmin(relief))
+    off = left_out[n]
+    if off is None or off < APART_DE00 or relief[n] > RELIEF:
         return []
-    limit = max(APART * float(np.median(known)), APART_DE00)
     return [Doubt(
         kind="panel apart",
-        said=f"{name} is off by ΔE00 {one:.1f} from what the other panels say, {one / max(np.median(known), 0.1):.0f} "
-             "times the usual.",
-        what_to_do="Look at its weighing, its drawdown and its file; or the mix lies beyond all the others.")
-        for name, one in zip(panels, left_out, strict=True) if one is not None and one > limit]
+        said=f"{panels[n]} is off by ΔE00 {off:.1f} from what the other panels say, which agree with one another "
+             f"{1 / relief[n]:.1f} times as well without it.",
+        what_to_do="Look at its weighing, its drawdown and its file, or leave it out.")]
 
 
 def _listed(names: Sequence[str], most: int = 4) -> str:

@@ -20,6 +20,7 @@ class LeftOut:
     readings: np.ndarray  # (n,), which of the ladder's readings are of this film
     reckoned: np.ndarray | None  # (n, W); None where the other films do not hold its colourants
     between: bool  # the other films hold less and more of each of its colourants
+    relief: float = 1.0  # root mean square of the residuals of the others, without this film over with it
 
 
 def leave_one_out(learned: LearnedLadder, *, surface: tuple[float, float] | None = None,
@@ -49,7 +50,15 @@ def _left_out(learned: LearnedLadder, film: int, surface: tuple[float, float] | 
     reckoned = reckoned_reflectance(
         refit, volume_fraction=np.repeat(its[None, :], len(readings), axis=0),
         thickness_um=np.full(len(readings), ladder.thickness_um[film]), ground_of=ladder.ground_of[readings])
-    return LeftOut(film, readings, reckoned, _between(its, others))
+    return LeftOut(film, readings, reckoned, _between(its, others), _relief(learned, refit, ladder.film_of != film))
+
+
+def _relief(learned: LearnedLadder, refit: LearnedLadder, others: np.ndarray) -> float:
+    """Well below 1 where the other films agree among themselves and not with this one."""
+    before = learned.reckoned[others] - learned.ladder.reading[others]
+    after = refit.reckoned - refit.ladder.reading
+    noise = learned.ladder.repeatability
+    return float(np.sqrt((np.mean(after**2) + noise**2) / (np.mean(before**2) + noise**2)))
 
 
 def _still_all(learned: np.ndarray, others: np.ndarray) -> bool:
