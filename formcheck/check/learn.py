@@ -75,7 +75,8 @@ def learn_ladder(written: WrittenLadder, *, file: str, progress: Progress = lamb
         de00_left_out_p90=float(np.percentile(known, 90)) if known else None,
         model_error_de00=_model_error(panels, off), condition=float(np.median(learned.condition)),
         doubts=ladder_doubts(learned, written.file.colourants, [one.name for one in panels], left_out=off,
-                             relief=[one.relief for one in left_out], without_black=_without_black(written, learned)),
+                             relief=[one.relief for one in left_out], between=[one.between for one in left_out],
+                             without_black=_without_black(written, learned)),
         notes=[*_surface_note(learned, panels, assumed), *_spread_notes(learned), *_density_notes(written),
                *written.notes],
         sources=[Cited(cite=_source(written)["cite"], kind=_source(written)["kind"])])
@@ -105,8 +106,8 @@ def _source(written: WrittenLadder) -> dict[str, str]:
 
 
 def _colourants(written: WrittenLadder, learned: LearnedLadder) -> list[LearnedColourant]:
-    k_sd = doubts.relative_sd(learned.K, learned.K_sd_beside_surface)
-    s_sd = doubts.relative_sd(learned.S, learned.S_sd_beside_surface)
+    k_sd = doubts.relative_sd(learned.K, learned.K_sd_together)
+    s_sd = doubts.relative_sd(learned.S, learned.S_sd_together)
     return [LearnedColourant(
         id=one.id, names=one.names or [one.id], role=one.role, known=one.material is not None,
         wavelength_nm=learned.ladder.wavelength_nm.tolist(), K_per_um=learned.K[c].tolist(),

@@ -15,22 +15,22 @@ POORLY_KNOWN = 0.3  # relative sd of the greater of K and S
 ILL_CONDITIONED = 100.0  # condition number; above 30 is strong dependence (Belsley, Kuh & Welsch 1980)
 DARK_INSIDE = 0.2  # reflectance inside a tint where it absorbs most; K/S is 1.6 there
 GROUND_SHOWS = 0.02  # of reflectance inside, from black to white ground: a contrast ratio near 0.98
-APART_DE00, RELIEF = 2.0, 0.6  # a panel so far off, without which the others agree so much better
+APART_DE00, RELIEF = 2.0, 0.5  # a panel so far off, without which the others agree so much better
 WORSE_DE00 = 1.0
 
 
 def ladder_doubts(learned: LearnedLadder, colourants: Sequence[Colourant], panels: Sequence[str], *,
-                  left_out: Sequence[float | None], relief: Sequence[float], without_black: float | None
-                  ) -> list[Doubt]:
+                  left_out: Sequence[float | None], relief: Sequence[float], between: Sequence[bool],
+                  without_black: float | None) -> list[Doubt]:
     """Every warning of a ladder.
 
-    left_out (panels): DE00 of each reckoned from the others, and relief what the others gain by that;
-    without_black: median DE00 of the mixes
-    with black reckoned from panels without, None where there are none.
+    left_out (panels): DE00 of each reckoned from the others, relief what the others gain by that, between
+    whether its mix lies between theirs; without_black: median DE00 of the mixes with black reckoned from
+    panels without, None where there are none.
     """
     return [*_thickness(learned, panels), *_surface(learned), *_conditioning(learned, colourants),
             *_pale_tints(learned, colourants), *_black(learned, colourants, without_black),
-            *_apart(panels, left_out, relief)]
+            *_apart(panels, left_out, relief, between)]
 
 
 def _thickness(learned: LearnedLadder, panels: Sequence[str]) -> list[Doubt]:
@@ -67,7 +67,8 @@ def _surface(learned: LearnedLadder) -> list[Doubt]:
 
 def _conditioning(learned: LearnedLadder, colourants: Sequence[Colourant]) -> list[Doubt]:
     found = []
-    k_sd, s_sd = doubts.relative_sd(learned.K, learned.K_sd), doubts.relative_sd(learned.S, learned.S_sd)
+    k_sd = doubts.relative_sd(learned.K, learned.K_sd_together)
+    s_sd = doubts.relative_sd(learned.S, learned.S_sd_together)
     for c in np.flatnonzero(learned.ladder.learned).tolist():
         absorbs = np.median(learned.K[c]) > np.median(learned.S[c])
         sd, symbol = (k_sd[c], "K") if absorbs else (s_sd[c], "S")
@@ -121,9 +122,13 @@ def _black(learned: LearnedLadder, colourants: Sequence[Colourant], without_blac
     return []
 
 
-def _apart(panels: Sequence[str], left_out: Sequence[float | None], relief: Sequence[float]) -> list[Doubt]:
-    """The one panel that the others agree without."""
-    n = int(np.argmin(relief))
+def _apart(panels: Sequence[str], left_out: Sequence[float | None], relief: Sequence[float],
+           between: Sequence[bool]) -> list[Doubt]:
+    """The one panel that the others agree without; those at the ends are alone in what they tell."""
+    able = [n for n, one in enumerate(between) if one]
+    if not able:
+        return []
+    n = min(able, key=lambda one: relief[one])
     off = left_out[n]
     if off is None or off < APART_DE00 or relief[n] > RELIEF:
         return []

@@ -27,7 +27,7 @@ def show_learned(learned: Learned, console: Console | None = None) -> None:
         labelled(out, head_rows(learned), indent=0)
         _doubts(out, learned)
         if learned.colourants:
-            heading(out, "K and S", "one standard deviation, for use with the surface constants above")
+            heading(out, "K and S", "one standard deviation, used together and with the surface constants above")
             table(out, _columns(CONSTANT_COLUMNS), [constant_texts(one) for one in learned.colourants])
         if learned.panels:
             heading(out, "Panels", "as fitted, and each reckoned from the others")

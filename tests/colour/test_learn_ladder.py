@@ -102,7 +102,7 @@ def test_a_ladder_of_masstone_and_one_tint_is_less_sure():
     few, many = fit_ladder(invented(27, films=LADDER[[0, 3, 5, 6]]).ladder), fit_ladder(invented(27).ladder)
     for one in (few, many):
         assert np.isfinite(one.condition).all()
-    doubt = [doubts.relative_sd(one.K, one.K_sd_beside_surface)[0] for one in (few, many)]
+    doubt = [doubts.relative_sd(one.K, one.K_sd_together)[0] for one in (few, many)]
     assert doubt[0] > 1.5 * doubt[1]
 
 

@@ -46,8 +46,8 @@ class LearnedLadder:
     S: np.ndarray
     K_sd: np.ndarray
     S_sd: np.ndarray
-    K_sd_beside_surface: np.ndarray  # the same for whoever uses K and S with the k1 and k2 learned beside them
-    S_sd_beside_surface: np.ndarray
+    K_sd_together: np.ndarray  # the same for whoever uses all K and S together, with the k1 and k2 learned beside them
+    S_sd_together: np.ndarray
     k1: float
     k2: float
     k1_sd: float
@@ -148,15 +148,17 @@ def _surety(ladder: Ladder, layout: Layout, at: Forward, now: Unknowns, beliefs:
             held: np.ndarray) -> dict[str, Any]:
     """Every standard deviation of a LearnedLadder, and its conditioning."""
     K_sd, S_sd = np.split(optical_sd(ladder, layout, at, now, beliefs, sd=sd, held=held), 2)
-    surface_held = held | (np.arange(layout.shared) < 2)
-    K_beside, S_beside = np.split(optical_sd(ladder, layout, at, now, beliefs, sd=sd, held=surface_held), 2)
     _, shared = covariances(ladder, layout, at, now, beliefs, sd=sd, held=held)
+    common = held | (np.arange(layout.shared) < 2)
+    if not ladder.thickness_known:  # K and S are those of the films as drawn, whatever that is in um
+        common[layout.thickness] = True
+    K_together, S_together = np.split(optical_sd(ladder, layout, at, now, beliefs, sd=sd, held=common), 2)
     k1_sd, k2_sd = np.sqrt(np.maximum(np.diag(shared)[:2], 0.0)).tolist()
-    return {"K_sd": K_sd, "S_sd": S_sd, "K_sd_beside_surface": K_beside, "S_sd_beside_surface": S_beside,
+    return {"K_sd": K_sd, "S_sd": S_sd, "K_sd_together": K_together, "S_sd_together": S_together,
             "k1_sd": k1_sd, "k2_sd": k2_sd, "condition": condition_number(ladder, layout, at, now, beliefs, sd)}
 
 
 def _untold(ladder: Ladder, *_: object) -> dict[str, Any]:
     sd = np.full(ladder.known_k.shape, np.nan)
-    return {"K_sd": sd, "S_sd": sd, "K_sd_beside_surface": sd, "S_sd_beside_surface": sd, "k1_sd": np.nan,
+    return {"K_sd": sd, "S_sd": sd, "K_sd_together": sd, "S_sd_together": sd, "k1_sd": np.nan,
             "k2_sd": np.nan, "condition": np.full(len(ladder.wavelength_nm), np.nan)}
