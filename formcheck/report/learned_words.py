@@ -53,9 +53,8 @@ def constant_texts(colourant: LearnedColourant) -> list[str]:
 
 def panel_texts(panel: LearnedPanel) -> list[list[str]]:
     """A panel as rows of PANEL_COLUMNS, one for each ground."""
-    return [[one_line(panel.name) if n == 0 else "", one_line(reading.ground), hex_text(reading.measured),
-             de00_text(reading.de00_fit), de00_text(reading.de00_left_out)]
-            for n, reading in enumerate(panel.readings)]
+    return [[one_line(panel.name), one_line(reading.ground), hex_text(reading.measured),
+             de00_text(reading.de00_fit), de00_text(reading.de00_left_out)] for reading in panel.readings]
 
 
 def solution_texts(solution: LearnedSolution) -> list[str]:
