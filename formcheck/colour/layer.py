@@ -44,7 +44,8 @@ def layer_reflectance(
     n : float array that broadcasts with (..., W)
         Refractive index of the layer against air; 1 for a layer with no surface of its own. [1]
     specular_included : bool
-        Whether the answer holds the gloss (d:8 sphere), or not (45:0, and mostly the eye).
+        Whether the answer holds the gloss (d:8 sphere), or not (gloss trapped, and mostly the eye). For
+        45:0 see geometry.py and layers.stack_reflectance.
     ground_in_air : bool
         The ground was measured in air: its own surface is taken off first. False: `ground` is already
         what light inside the layer meets (a ground given by its body alone, an ideal white).
@@ -104,10 +105,18 @@ def ground_below(
     ground_n = n if ground_n is None else ground_n
     k1, k2 = _surface(ground_n)
     body = saunderson.to_internal(ground, k1=k1, k2=k2, specular_included=specular_included)
+    return behind_contact(body, n=n, ground_n=ground_n)
+
+
+def behind_contact(body: ArrayLike, *, n: ArrayLike, ground_n: ArrayLike) -> np.ndarray:
+    """What a layer of index n meets where it touches a body of index ground_n that reflects `body` inside.
+
+    One boundary for diffuse light; none where the indices agree, or the body is open (index 1). Broadcasts.
+    """
     onto = saunderson.diffuse_reflection(n_from=n, n_to=ground_n)
     back = saunderson.diffuse_reflection(n_from=ground_n, n_to=n)
-    behind_boundary = saunderson.to_measured(body, k1=onto, k2=back, specular_included=True)
-    return np.where(np.equal(ground_n, 1), body, behind_boundary)
+    behind = saunderson.to_measured(body, k1=onto, k2=back, specular_included=True)
+    return np.where(np.equal(ground_n, 1), body, np.minimum(behind, 1.0))  # rounding alone passes 1
 
 
 def stained_ground(

@@ -54,7 +54,8 @@ def to_measured(
 ) -> np.ndarray:
     """Reflectance as measured in air from that inside the film; any shapes that broadcast, 0 to 1. [1]
 
-    specular_included: sphere with the gloss let in (d:8, di:8). False: 45:0, or gloss trapped (de:8).
+    specular_included: sphere with the gloss let in (d:8, di:8). False: gloss trapped (de:8). With fitted
+    constants also 45:0, whose own form for a given index is in geometry.py.
 
     Source: J. L. Saunderson, J. Opt. Soc. Am. 32 (1942) 727.
     """
