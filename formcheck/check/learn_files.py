@@ -22,6 +22,8 @@ def record_paths(out: Path, ids: list[str]) -> dict[str, Path]:
     """Where each colourant's record goes: the first to `out`, the others beside it, their ids in the name."""
     if out.suffix.lower() not in (".yaml", ".yml"):
         raise trouble(str(out), f"a file named {out.suffix or out.name!r}", "a record file: record.yaml")
+    if not out.parent.is_dir():
+        raise trouble(str(out), f"no folder {str(out.parent)!r}", "a record file in a folder that exists")
     return {one: out if n == 0 else out.with_name(f"{out.stem}_{one}{out.suffix}") for n, one in enumerate(ids)}
 
 

@@ -195,8 +195,23 @@ def test_every_mistake_has_its_place(tmp_path, mistake, found, expected):
 
 
 def test_an_out_file_that_cannot_be_written_is_refused_before_the_fit(tmp_path):
-    with pytest.raises(InputError, match=r"record\.yaml"):
-        learn_file(LADDER, out=tmp_path / "record.csv")
+    for out in (tmp_path / "record.csv", tmp_path / "nowhere" / "record.yaml"):
+        with pytest.raises(InputError, match=r"record (file|file in a folder)"):
+            learn_file(LADDER, out=out)
+
+
+def test_two_panels_over_one_ground_are_enough_to_begin(tmp_path):
+    def least(data) -> None:
+        data["panels"] = [one for one in data["panels"] if one["name"] in ("masstone", "middle tint")]
+        data["colourants"].pop()
+        data["film"] = "unknown"
+        for panel in data["panels"]:
+            panel.pop("film")
+            panel["readings"].pop()
+
+    learned = learn_file(changed(tmp_path, least))
+    assert learned.de00_fit_median < 2.0 and learned.doubts
+    assert learned.panels[0].left_out_reason == "" and learned.panels[1].left_out_reason != ""
 
 
 def test_the_demo_dilution(tmp_path):

@@ -64,6 +64,8 @@ def checked(ladder: Ladder) -> Ladder:
     absent = ~(L.volume_fraction > 0).any(axis=0) & L.learned
     refuse_where(absent, L.volume_fraction.max(axis=0), "volume_fraction (greatest)",
                  "each colourant to be learned in some film")
+    if not L.learned.any():
+        raise ValueError("K and S of every colourant known; expected one to be learned")
     if not L.repeatability > 0:
         raise ValueError(f"repeatability {L.repeatability}; expected above 0")
     return ladder
