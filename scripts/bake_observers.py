@@ -13,7 +13,8 @@ import numpy as np
 
 DATA = Path(__file__).resolve().parent.parent / "formcheck" / "colour" / "data"
 OBSERVERS = {2: "CIE 1931 2 Degree Standard Observer", 10: "CIE 1964 10 Degree Standard Observer"}
-LIGHTS = ("D65", "D50", "A", "C", "D55", "D75", "FL2", "FL7", "FL11", "LED-B2", "LED-B3")
+LIGHTS = ("D65", "D50", "A", "C", "D55", "D75", "FL2", "FL7", "FL11", "LED-B1", "LED-B2", "LED-B3",
+          "LED-B4", "LED-B5", "LED-BH1", "LED-RGB1", "LED-V1", "LED-V2")
 
 OBSERVER_HEAD = """\
 # Colour-matching functions of the CIE 1931 (2 degree) and CIE 1964 (10 degree) standard observers
@@ -22,7 +23,7 @@ OBSERVER_HEAD = """\
 # wavelength_nm, x_2, y_2, z_2, x_10, y_10, z_10
 """
 LIGHT_HEAD = """\
-# Relative spectral power of CIE illuminants (A, C, D series, FL series) and of typical white LEDs (LED-B)
+# Relative spectral power of CIE illuminants (A, C, D series, FL series) and of typical white LEDs (LED series)
 # Source: ISO/CIE 11664-2 and CIE 015:2018, 5 nm tables, as carried by colour-science {version}; baked by
 # scripts/bake_observers.py. FL and LED tables begin at 380 nm: their first value is held down to 360 nm.
 # wavelength_nm, {names}
