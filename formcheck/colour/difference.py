@@ -1,4 +1,4 @@
-"""How far two colours stand apart: CIEDE2000 and its parts, and the difference in plain words."""
+"""How far two colours stand apart: CIEDE2000 and CIELAB with their parts, and the difference in plain words."""
 
 from __future__ import annotations
 
@@ -19,9 +19,10 @@ NO_DIFFERENCE = "no difference to speak of"
 
 @dataclass(frozen=True)
 class DifferenceParts:
-    """CIEDE2000 in parts, each shape (...): lightness, chroma and hue weighted, so that for
-    kl = kc = kh = 1 total**2 = lightness**2 + chroma**2 + hue**2 + rotation chroma hue. Signs: second
-    colour less the first; hue positive counter-clockwise (red, yellow, green, blue).
+    """A difference in parts, each shape (...): lightness, chroma and hue as the formula weighs them.
+
+    total**2 = lightness**2 + chroma**2 + hue**2, in CIEDE2000 with its rotation x chroma x hue besides.
+    Signs: second colour less the first; hue positive counter-clockwise (red, yellow, green, blue).
     """
 
     total: np.ndarray
@@ -67,6 +68,25 @@ def parts_2000(
     return DifferenceParts(np.sqrt(np.maximum(squared, 0)), lightness, chroma, hue)
 
 
+def delta_e_ab(lab1: ArrayLike, lab2: ArrayLike) -> np.ndarray:
+    """CIELAB colour difference DE*ab, shape (...), of L*, a*, b* (..., 3) that broadcast. [1]
+
+    Source: ISO/CIE 11664-4.
+    """
+    return np.linalg.norm(np.asarray(lab2, dtype=float) - np.asarray(lab1, dtype=float), axis=-1)
+
+
+def cielab_parts(lab1: ArrayLike, lab2: ArrayLike) -> DifferenceParts:
+    """DE*ab with DL*, DC*ab and DH*ab = 2 sqrt(C1 C2) sin(dh/2), as ISO/CIE 11664-4; arguments as there."""
+    L1, a1, b1 = np.moveaxis(np.asarray(lab1, dtype=float), -1, 0)
+    L2, a2, b2 = np.moveaxis(np.asarray(lab2, dtype=float), -1, 0)
+    turn = np.arctan2(b2, a2) - np.arctan2(b1, a1)
+    turn = np.where(np.abs(turn) > np.pi, turn - np.copysign(2 * np.pi, turn), turn)
+    C1, C2 = np.hypot(a1, b1), np.hypot(a2, b2)
+    hue = 2 * np.sqrt(C1 * C2) * np.sin(turn / 2)
+    return DifferenceParts(delta_e_ab(lab1, lab2), L2 - L1, C2 - C1, hue)
+
+
 def _chroma_switch(chroma: np.ndarray) -> np.ndarray:
     """G: stretches a* near the grey axis, 0.5 there and 0 for vivid colours."""
     c7 = chroma**7
@@ -103,15 +123,18 @@ def _rotation(C: np.ndarray, h: np.ndarray) -> np.ndarray:
     return -2 * np.sqrt(c7 / (c7 + TWENTY_FIVE_TO_7)) * np.sin(np.radians(2 * turn))
 
 
-def difference_words(lab_from: ArrayLike, lab_to: ArrayLike) -> str:
+def difference_words(
+    lab_from: ArrayLike, lab_to: ArrayLike, parts: DifferenceParts | None = None
+) -> str:
     """How `lab_to` looks beside `lab_from`, both L*, a*, b* of shape (3,): words by falling weight.
 
-    Lightness, chroma and hue are weighed as CIEDE2000 weighs them. Beside a nearly grey colour the
+    Lightness, chroma and hue are weighed as CIEDE2000 weighs them, or as in `parts` (cmc.parts_cmc,
+    cielab_parts) of the same two colours in the same order. Beside a nearly grey colour the
     shift is told as redder or greener, yellower or bluer; beside others as more vivid or duller, and
     by the way the hue turns. Parts below 0.5, or a quarter of the greatest, go unsaid.
     """
     first, second = np.asarray(lab_from, dtype=float), np.asarray(lab_to, dtype=float)
-    parts = parts_2000(first, second)
+    parts = parts_2000(first, second) if parts is None else parts
     named = [("lighter" if parts.lightness > 0 else "darker", abs(float(parts.lightness)))]
     if np.hypot(first[1], first[2]) < NEARLY_GREY:
         named += _sideways(first, second, total=float(np.hypot(parts.chroma, parts.hue)))

@@ -5,7 +5,14 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from formcheck.colour.difference import NO_DIFFERENCE, delta_e_2000, difference_words, parts_2000
+from formcheck.colour.cmc import parts_cmc
+from formcheck.colour.difference import (
+    NO_DIFFERENCE,
+    cielab_parts,
+    delta_e_2000,
+    difference_words,
+    parts_2000,
+)
 
 lightness, opponent = st.floats(0, 100), st.floats(-100, 100)
 some_lab = st.tuples(lightness, opponent, opponent)
@@ -68,3 +75,25 @@ def test_parts_make_up_the_whole_where_nothing_is_rotated():
     parts = parts_2000([50, 40, 40], [55, 35, 50])
     whole = np.sqrt(parts.lightness**2 + parts.chroma**2 + parts.hue**2)
     assert parts.total == pytest.approx(whole, rel=1e-6) and parts.lightness > 0 and parts.hue > 0
+
+
+@pytest.mark.parametrize(
+    "lab_from, lab_to, sign",
+    [
+        ((50, 40, 0), (50, 39, 8), 1),  # red turning yellow: counter-clockwise
+        ((50, 39, -8), (50, 39, 8), 1),  # across the seam at 0 degrees
+        ((50, -39, 8), (50, -39, -8), 1),  # across the seam of the arctangent
+        ((50, -39, -8), (50, -39, 8), -1),
+    ],
+)
+def test_hue_has_one_sign_in_every_formula(lab_from, lab_to, sign):
+    for parts in (cielab_parts, parts_cmc, parts_2000):
+        assert np.sign(parts(lab_from, lab_to).hue) == sign
+
+
+def test_words_by_the_weights_of_another_formula():
+    """In CMC(2:1) lightness counts half, so a shift in both is told hue first."""
+    standard, sample = (50, 40, 0), (47.6, 40, 4)
+    assert difference_words(standard, sample).startswith("darker")
+    assert difference_words(standard, sample, parts_cmc(standard, sample)) == "yellower, slightly darker"
+    assert difference_words(standard, sample, cielab_parts(standard, sample)) == "yellower, darker"
