@@ -93,20 +93,23 @@ def film(K: ArrayLike, S: ArrayLike, *, thickness_um: ArrayLike, ground: ArrayLi
     X, R_g = _thickness_and_ground(thickness_um, ground)
     shape = np.broadcast_shapes(K.shape, S.shape, X.shape, R_g.shape)
     K, S = (np.array(np.broadcast_to(values, shape)) for values in (K, S))  # copies, to be written over
-    return film_writing_over(K, S, X, R_g)
+    return film_writing_over(K, S, X, R_g, scratch=(np.empty(shape), np.empty(shape)))
 
 
-def film_writing_over(K: np.ndarray, S: np.ndarray, X: np.ndarray, R_g: np.ndarray) -> np.ndarray:
-    """`film` for checked arrays, K and S of the full shape; the result stands in K, and S is spent.
+def film_writing_over(
+    K: np.ndarray, S: np.ndarray, X: np.ndarray, R_g: np.ndarray, *, scratch: tuple[np.ndarray, np.ndarray]
+) -> np.ndarray:
+    """`film` for checked arrays, K, S and scratch of the full shape; the result stands in K, the rest is spent.
 
-    One square root, one tanh, no other array than two of scratch: fast where the arrays fit the cache.
+    One square root, one tanh and no array of its own: fast where the four fit the cache.
     """
-    alpha = S + S
+    alpha, t = scratch
+    np.add(S, S, out=alpha)
     alpha += K
     alpha *= K
     np.sqrt(alpha, out=alpha)
     alpha += LEAST_ALPHA
-    t = alpha * X
+    np.multiply(alpha, X, out=t)
     np.tanh(t, out=t)
     t /= alpha
     K *= t  # at most 1, reached where nothing scatters

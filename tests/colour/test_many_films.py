@@ -3,7 +3,7 @@ import pytest
 
 from formcheck.colour.cielab import lab_of_spectrum
 from formcheck.colour.layer import layer_reflectance
-from formcheck.colour.many_films import FILMS_AT_ONCE, lab_of_films
+from formcheck.colour.many_films import FILMS_AT_ONCE, FILMS_PER_THREAD, lab_of_films
 from formcheck.spectra.grid import WAVELENGTH_NM
 
 
@@ -68,3 +68,24 @@ def test_negative_figures_are_refused(name):
     arguments[name] = -np.ones_like(arguments[name])
     with pytest.raises(ValueError, match=name):
         lab_of_films(**arguments, ground=np.full(85, 0.8))
+
+
+@pytest.mark.parametrize("included", [False, True])
+def test_threads_change_nothing(included):
+    loading, k, s = some_films(3 * FILMS_PER_THREAD + 5)
+    ground = np.full(85, 0.8)
+    one, three = (
+        lab_of_films(loading, k=k, s=s, thickness_um=20, ground=ground, specular_included=included, threads=t)
+        for t in (1, 3)
+    )
+    np.testing.assert_allclose(three, one, atol=1e-10)
+    spectrum = layer_reflectance(
+        ground=ground, k_x=loading[-1] @ k * 20, s_x=loading[-1] @ s * 20, specular_included=included
+    )
+    np.testing.assert_allclose(three[-1], lab_of_spectrum(spectrum), atol=1e-8)
+
+
+def test_an_endless_film_is_refused():
+    loading, k, s = some_films(2)
+    with pytest.raises(ValueError, match="a finite thickness"):
+        lab_of_films(loading, k=k, s=s, thickness_um=np.inf, ground=np.full(85, 0.8))
