@@ -29,6 +29,7 @@ HUE_STEP, CHROMA_STEP = 2.5, 2.0
 Y_OF_VALUE = np.array([0.0, 1.1914, -0.22533, 0.23352, -0.020484, 0.00081939])
 VALUES = np.linspace(0, 10, 201)  # where the way back from Y begins
 ROUNDS, SETTLED = 60, 1e-7
+NEARLY = 1e-6  # so close to a point of the table counts as on it
 LEAST_CHROMA = 0.05  # below, the notation to one decimal has no hue
 
 
@@ -146,7 +147,7 @@ def _plane_at(value: float) -> tuple[np.ndarray, np.ndarray, np.ndarray]:
     pair = slice(lower, lower + 2)
     weight = np.array([1 - share, share])
     # A value of the table itself needs only its own plane
-    reach = np.where(weight[:, None] > 0, most[pair], np.inf).min(axis=0)
+    reach = np.where(weight[:, None] > NEARLY, most[pair], np.inf).min(axis=0)
     return (*(np.tensordot(weight, grid[pair], 1) for grid in (distance, angle)), reach)
 
 
@@ -208,4 +209,5 @@ def _hue_at_angle(ring: np.ndarray, phi: float) -> float:
 def _most_at(most: np.ndarray, hue: float) -> float:
     """Greatest chroma that both neighbouring hues of the table reach."""
     place = hue / HUE_STEP - 1
-    return float(min(most[int(np.floor(place)) % 40], most[int(np.ceil(place)) % 40]))
+    lower, upper = int(np.floor(place + NEARLY)), int(np.ceil(place - NEARLY))
+    return float(min(most[lower % 40], most[upper % 40])) + NEARLY

@@ -10,6 +10,7 @@ from formcheck.colour.difference import delta_e_2000, delta_e_ab
 from formcheck.colour.metamerism import ADDITIVE, CORRECTIONS, MULTIPLICATIVE, UNCORRECTED, metamerism_index
 from formcheck.spectra.grid import WAVELENGTH_NM
 
+pytestmark = pytest.mark.filterwarnings("ignore::colour.utilities.ColourRuntimeWarning")
 OBSERVER = colour.MSDS_CMFS["CIE 1964 10 Degree Standard Observer"]
 
 
