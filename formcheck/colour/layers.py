@@ -10,7 +10,7 @@ K = 2 sigma_a and S = 3/4 sigma_s (1 - g) [P. S. Mudgett & L. W. Richards, Appl.
 reflectance comes out
 - within 0.006 where sigma_s X >= 4 and sigma_a <= 0.03 sigma_s, on any ground;
 - up to 0.012 low where sigma_s X >= 4 and the absorption is stronger;
-- up to 0.025 low in thinner films over black, and up to 0.035 low in thin strongly absorbing ones over white.
+- up to 0.025 low in thinner films over black, and up to 0.04 low in thin strongly absorbing ones over white.
 Coefficients measured as films of the same kind carry these errors within them, and predict more closely.
 """
 
