@@ -69,12 +69,14 @@ def shade(
     ground: Annotated[list[str] | None, typer.Option(
         "--ground", help="A built-in ground, or a file of reflectance; again for each.")] = None,
     light: Annotated[list[str] | None, typer.Option("--light", help="A light; again for each.")] = None,
+    draws: Annotated[int, typer.Option("--draws", help="Draw the uncertain inputs so often, instead of first order.")] = 0,
     shelf: ShelfFolder = None, json: Json = False, page: Page = None,
 ) -> None:
     """The shade alone, as written or along a row of amounts, on several grounds and under several lights."""
     from formcheck.check.sweep import sweep_shades
 
-    record = sweep_shades(file, vary=vary, steps=steps, grounds=ground or [], lights=light or [], shelf_folder=shelf)
+    record = sweep_shades(file, vary=vary, steps=steps, grounds=ground or [], lights=light or [], draws=draws,
+                          shelf_folder=shelf)
     if json:
         _print_utf_8(record.model_dump_json(indent=1))
     else:

@@ -130,11 +130,11 @@ def _absorber_shares(parts: Parts, known: Colourants, ph: np.ndarray) -> np.ndar
     return shares
 
 
-def draws_of(x: Inputs, seed: int = 20) -> np.ndarray:
-    """Rows that the inputs could be, (DRAWS, inputs); the same inputs always give the same rows."""
+def draws_of(x: Inputs, n: int = DRAWS, seed: int = 20) -> np.ndarray:
+    """Rows that the inputs could be, (n, inputs); the same inputs always give the same rows."""
     uncertain = np.flatnonzero(x.sd > 0)
     chance = Random(seed)  # NumPy's generators take longer to import than these few numbers to draw
-    noise = np.array([chance.gauss(0.0, 1.0) for _ in range(DRAWS * len(uncertain))]).reshape(DRAWS, -1)
-    drawn = np.tile(x.value, (DRAWS, 1))
+    noise = np.array([chance.gauss(0.0, 1.0) for _ in range(n * len(uncertain))]).reshape(n, -1)
+    drawn = np.tile(x.value, (n, 1))
     drawn[:, uncertain] += noise * x.sd[uncertain]
     return np.maximum(drawn, x.lower)

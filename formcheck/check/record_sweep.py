@@ -44,6 +44,7 @@ class ShadeSweep(Part):
     geometry: str
     quantity: Literal["reflectance", "transmittance"]
     wavelength_nm: list[float]
+    uncertainty: str = "first order"  # or how many draws
     wanted: Wanted | None = None
     shades: list[SweptShade]  # ground by ground, amounts in order
     basis: list[ColourantBasis] = Field(default_factory=list)

@@ -14,7 +14,7 @@ from formcheck import __version__
 from formcheck.check.acid import acid_state, form_shares
 from formcheck.check.colourants import colourants_of
 from formcheck.check.parts import Parts, parts_of
-from formcheck.check.prediction_model import Model, inputs_of, prediction_model
+from formcheck.check.prediction_model import Model, draws_of, inputs_of, prediction_model
 from formcheck.check.record import Swatch, UnderLight, Wanted
 from formcheck.check.record_sweep import ShadeSweep, SweptShade
 from formcheck.check.setting import Viewing, viewing_of
@@ -24,7 +24,7 @@ from formcheck.colour.cielab import lab
 from formcheck.colour.difference import delta_e_2000, difference_words
 from formcheck.colour.grounds import ground_names
 from formcheck.colour.tristimulus import white_point, xyz
-from formcheck.colour.uncertainty import Propagated, difference_spread, probability_within, propagate
+from formcheck.colour.uncertainty import difference_spread, probability_within, propagate
 from formcheck.recipe.batch import Batch, Varied, build_batch, with_amounts
 from formcheck.recipe.model import SpectrumReference
 from formcheck.recipe.read import WrittenRecipe, read_recipe
@@ -34,6 +34,7 @@ from formcheck.units import UNITS, UnitKind, known_units, parse_amount
 
 MOST_STEPS = 2000
 USUAL_STEPS = 11
+LEAST_DRAWS, MOST_DRAWS = 100, 100_000
 VARIED = re.compile(r"\s*(.+?)\s*=\s*(\S.*?)\s*\.\.\s*(\S.*?)\s*")
 NUMBER = re.compile(r"[-+]?[\d.]+(?:[eE][-+]?\d+)?")
 EXPECTED = "'INGREDIENT=from..to' with a unit, such as 'harbour blue paste=2 % w/w..12 % w/w'"
@@ -51,8 +52,10 @@ class Row:
 
 
 def sweep_shades(path: Path, *, vary: str | None = None, steps: int = USUAL_STEPS, grounds: Sequence[str] = (),
-                 lights: Sequence[str] = (), shelf_folder: Path | None = None) -> ShadeSweep:
+                 lights: Sequence[str] = (), draws: int = 0, shelf_folder: Path | None = None) -> ShadeSweep:
     """Shades of a recipe file on every ground named (its own where none is), under every light named.
+
+    The uncertainty is of first order, or with `draws` that of so many draws of every uncertain input.
 
     Raises
     ------
@@ -60,6 +63,8 @@ def sweep_shades(path: Path, *, vary: str | None = None, steps: int = USUAL_STEP
         the recipe cannot be used or its shade not be told; no such ingredient, ground or light; amounts
         that cannot be.
     """
+    if draws and not LEAST_DRAWS <= draws <= MOST_DRAWS:
+        raise trouble("--draws", str(draws), f"a whole number from {LEAST_DRAWS} to {MOST_DRAWS}")
     written = _looked_at(read_recipe(path), lights=lights)
     batch = build_batch([written], shelf_folder=shelf_folder)
     row = _row(vary, steps, batch) if vary else None
@@ -69,7 +74,7 @@ def sweep_shades(path: Path, *, vary: str | None = None, steps: int = USUAL_STEP
     shelf = batch.shelves[0]
     parts = parts_of(shelf, batch.materials)
     film = film_state(batch, parts, shelf)
-    return _swept(written, batch, parts, film, row, grounds or [""])
+    return _swept(written, batch, parts, film, row, grounds or [""], draws)
 
 
 def _looked_at(written: WrittenRecipe, *, lights: Sequence[str] = (), ground: str = "") -> WrittenRecipe:
@@ -119,7 +124,7 @@ def _row_of(name: str, line: int, first: str, last: str):
 
 
 def _swept(written: WrittenRecipe, batch: Batch, parts: Parts, film: FilmState, row: Row | None,
-           grounds: Sequence[str]) -> ShadeSweep:
+           grounds: Sequence[str], draws: int) -> ShadeSweep:
     n = len(batch.mass_fraction)
     acids = [acid_state(batch, batch.shelves[0], r) for r in range(n)]
     present = (parts.fractions(batch.mass_fraction) != 0).any(axis=0)
@@ -139,7 +144,7 @@ def _swept(written: WrittenRecipe, batch: Batch, parts: Parts, film: FilmState, 
     first = next(iter(seen.values()))[0]
     model = prediction_model(batch, parts, film, acids[0], first, known, 0)
     shades = [shade for name, viewings in seen.items()
-              for shade in _on_ground(name, viewings, model, batch, parts, film, acids, known, row)]
+              for shade in _on_ground(name, viewings, model, batch, parts, film, acids, known, row, draws)]
     wanted = None
     if first.wanted_lab is not None:
         wanted = Wanted(swatch=_swatch(first.wanted_lab, first), light=first.lights[0],
@@ -149,13 +154,14 @@ def _swept(written: WrittenRecipe, batch: Batch, parts: Parts, film: FilmState, 
         varied=row.name if row else "", unit=row.unit if row else "", amounts=row.amounts.tolist() if row else [],
         grounds=list(seen), lights=list(first.lights), observer_deg=first.observer_deg, geometry=first.geometry,
         quantity="transmittance" if first.setting and first.setting.path_length_cm is not None else "reflectance",
-        wavelength_nm=WAVELENGTH_NM.tolist(), wanted=wanted, shades=shades,
+        wavelength_nm=WAVELENGTH_NM.tolist(), uncertainty=f"{draws} draws" if draws else "first order",
+        wanted=wanted, shades=shades,
         basis=basis_with_shares(known, form_shares(parts, present, acids[0]) if not row else {}, parts),
         left_out=left_out(model, first, known, parts, batch, 0), notes=list(batch.notes[0]))
 
 
 def _on_ground(name: str, viewings: Sequence[Viewing], model: Model, batch: Batch, parts: Parts, film: FilmState,
-               acids, known, row: Row | None) -> list[SweptShade]:
+               acids, known, row: Row | None, draws: int) -> list[SweptShade]:
     """All amounts on one ground at once."""
     first = viewings[0]
     setting, light, observer = first.setting, first.lights[0], first.observer_deg
@@ -170,11 +176,18 @@ def _on_ground(name: str, viewings: Sequence[Viewing], model: Model, batch: Batc
     spectra = model.spectra(value, setting)
     under = _under_lights(spectra, first)
     contrast = contrast_ratios(model, first, value) if setting.ground is not None else [None] * len(value)
-    against = _against(moved, first)
+    against = _against(moved.value, moved.covariance, first)
+    sds = moved.sd
+    if draws:
+        drawn = [labs(draws_of(one, draws)) for one in inputs]
+        sds = np.array([one.std(axis=0) for one in drawn])
+        against = _against(moved.value, np.array([np.cov(one.T) for one in drawn]), first)
+        for told, one in zip(against, drawn, strict=True):
+            told.update(_counted(one, first))
     swatches = swatches_of(moved.value, light, observer)
     return [SweptShade(
         amount=float(row.amounts[r]) if row else None, ground=name, swatch=swatches[r],
-        lab_sd=(float(moved.sd[r, 0]), float(moved.sd[r, 1]), float(moved.sd[r, 2])), lights=under[r],
+        lab_sd=(float(sds[r, 0]), float(sds[r, 1]), float(sds[r, 2])), lights=under[r],
         contrast_ratio=contrast[r], dominated_by=dominant(moved.share_total[r], inputs[r].label),
         value=spectra[r].tolist(), **against[r]) for r in range(len(value))]
 
@@ -189,18 +202,26 @@ def _under_lights(spectra: np.ndarray, viewing: Viewing) -> list[list[UnderLight
              for n, light in enumerate(viewing.lights)] for r in range(len(spectra))]
 
 
-def _against(moved: Propagated, viewing: Viewing) -> list[dict]:
+def _counted(drawn: np.ndarray, viewing: Viewing) -> dict:
+    """Spread of the difference and chance to be in tolerance, counted among drawn shades (draws, 3)."""
+    if viewing.wanted_lab is None:
+        return {}
+    de00 = delta_e_2000(drawn, np.array(viewing.wanted_lab))
+    within = None if viewing.tolerance is None else float((de00 <= viewing.tolerance).mean())
+    return {"de00_sd": float(de00.std()), "probability_within": within}
+
+
+def _against(value: np.ndarray, covariance: np.ndarray, viewing: Viewing) -> list[dict]:
     """Difference from the wanted shade of every amount; nothing where none is wanted."""
-    n = len(moved.value)
+    n = len(value)
     if viewing.wanted_lab is None:
         return [{} for _ in range(n)]
     target = np.broadcast_to(np.array(viewing.wanted_lab), (n, 3))
-    de00 = delta_e_2000(moved.value, target)
-    spread = difference_spread(moved.value, moved.covariance, target)[1]
+    de00 = delta_e_2000(value, target)
+    spread = difference_spread(value, covariance, target)[1]
     tolerance = viewing.tolerance
-    within = None if tolerance is None else probability_within(moved.value, moved.covariance, target,
-                                                               np.full(n, tolerance))
-    words = [difference_words(one, shade) for one, shade in zip(target, moved.value, strict=True)]
+    within = None if tolerance is None else probability_within(value, covariance, target, np.full(n, tolerance))
+    words = [difference_words(one, shade) for one, shade in zip(target, value, strict=True)]
     return [{"de00": float(de00[r]), "de00_sd": float(spread[r]), "difference_words": words[r],
              "probability_within": None if within is None else float(within[r])} for r in range(n)]
 

@@ -36,6 +36,7 @@ def head_rows(sweep: ShadeSweep) -> list[tuple[str, str]]:
     if sweep.varied:
         span = f"{plain(sweep.amounts[0])} to {plain(sweep.amounts[-1])} {sweep.unit}"
         rows.append(("varied", f"{one_line(sweep.varied)}, {span} in {len(sweep.amounts)} steps"))
+    rows.append(("uncertainty", one_line(sweep.uncertainty)))
     if sweep.wanted:
         lab = ", ".join(coordinate(value) for value in sweep.wanted.swatch.lab)
         rows.append(("wanted", f"{hex_colour(sweep.wanted.swatch) or 'no colour'}, L*a*b* {lab}"))

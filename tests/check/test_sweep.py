@@ -82,3 +82,18 @@ def test_the_page_asks_for_nothing_outside():
     page = sweep_html(sweep_shades(INK, vary="harbour blue paste=3..9 % w/w", steps=4))
     assert "http" not in page.replace("http-equiv", "")
     assert page.count('class="swatch chips"') == 1 and "L*" in page
+
+
+def test_draws_and_first_order_agree():
+    kwargs = {"vary": "harbour blue paste=6..10 % w/w", "steps": 3}
+    first, drawn = sweep_shades(INK, **kwargs), sweep_shades(INK, draws=4000, **kwargs)
+    assert first.uncertainty == "first order" and drawn.uncertainty == "4000 draws"
+    for one, other in zip(first.shades, drawn.shades, strict=True):
+        assert other.swatch == one.swatch
+        assert other.lab_sd == pytest.approx(one.lab_sd, rel=0.15, abs=0.02)
+        assert other.probability_within == pytest.approx(one.probability_within, abs=0.06)
+
+
+def test_too_few_draws_are_refused():
+    with pytest.raises(InputError, match="--draws"):
+        sweep_shades(INK, draws=3)
