@@ -69,7 +69,7 @@ def shade(
     ground: Annotated[list[str] | None, typer.Option(
         "--ground", help="A built-in ground, or a file of reflectance; again for each.")] = None,
     light: Annotated[list[str] | None, typer.Option("--light", help="A light; again for each.")] = None,
-    draws: Annotated[int, typer.Option("--draws", help="Draw the uncertain inputs so often, instead of first order.")] = 0,
+    draws: Annotated[int, typer.Option("--draws", help="Uncertainty by so many draws.")] = 0,
     shelf: ShelfFolder = None, json: Json = False, page: Page = None,
 ) -> None:
     """The shade alone, as written or along a row of amounts, on several grounds and under several lights."""
