@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 import re
+from typing import get_args
 
-from formcheck.spectra.measured import How, Quantity, Scale, specular_of
+from formcheck.spectra.measured import ABSORPTION, How, Quantity, Scale, specular_of
 
 LONGEST_LABEL = 40
 LONGEST_NOTE = 300
@@ -13,6 +14,7 @@ SHORTEST_NM, LONGEST_NM = 150.0, 4000.0
 QUANTITIES: tuple[tuple[Quantity, re.Pattern[str]], ...] = (
     ("reflectance", re.compile(r"reflect|remission|%\s*r\b|\br\s*[(\[]?\s*%")),
     ("transmittance", re.compile(r"transmi[st]|%\s*t\b|\bt\s*[(\[]?\s*%")),
+    ("absorptivity_l_g_cm", re.compile(r"absorptivity,? (in )?l[ /(]+g\b")),
     ("epsilon_l_mol_cm", re.compile(r"epsilon|ε|molar (decadic )?(absorptivity|absorption|extinction)")),
     ("absorbance", re.compile(r"absorban|\babs\b|optical density|absorptivity|extinction")),
     ("relative_power", re.compile(r"\bpower\b|\bspd\b|irradiance|\bradiance|\bemissi")),
@@ -31,8 +33,8 @@ WAVELENGTH = re.compile(r"wave ?length|^\s*(nm|λ|lambda|wl)\b", re.IGNORECASE)
 OTHER_UNIT = re.compile(r"wave ?number|cm ?-1|cm\^|cm⁻|\bev\b|[µμ]m|\bum\b|micro|ngstr|\bthz\b", re.IGNORECASE)
 NAME_HEADINGS = ("name", "sample name", "sample", "sample id", "id", "colour", "color", "patch", "panel", "label",
                  "title", "specimen")
-TOLD = re.compile(r"\s*(?:measur\w+ |measurement )?(geometry|instrument|illumination|condition)\s*[:=]\s*(\S.*)",
-                  re.IGNORECASE)
+TOLD = re.compile(r"\s*(?:measur\w+ |measurement )?(geometry|instrument|illumination|condition|specular|quantity|scale)"
+                  r"\s*[:=]\s*(\S.*)", re.IGNORECASE)
 
 
 def words(text: str) -> str:
@@ -42,8 +44,8 @@ def words(text: str) -> str:
 def quantity_of(text: str) -> Quantity | None:
     """The quantity that a heading or note names; None for none or for several."""
     named = [quantity for quantity, pattern in QUANTITIES if pattern.search(words(text))]
-    if named == ["epsilon_l_mol_cm", "absorbance"]:
-        return "epsilon_l_mol_cm"
+    if len(named) == 2 and named[1] == "absorbance":
+        return named[0] if named[0] in ABSORPTION else None
     return named[0] if len(named) == 1 else None
 
 
@@ -73,13 +75,32 @@ def note_scale(notes: list[str]) -> Scale | None:
     return said.pop() if len(said) == 1 else None
 
 
+def told(notes: list[str]) -> dict[str, str]:
+    """What notes of the form `geometry: 45:0` tell, by the word before the colon."""
+    found = (TOLD.match(note[:LONGEST_NOTE]) for note in notes)
+    return {match[1].casefold(): match[2].strip() for match in found if match}
+
+
+def told_quantity(notes: list[str]) -> Quantity | None:
+    """The quantity of a note `quantity: ...`, which counts for more than any heading."""
+    said = told(notes).get("quantity", "")
+    exact: dict[str, Quantity] = {word: word for word in get_args(Quantity)}
+    return exact.get(said.casefold().replace(" ", "_")) or quantity_of(said)
+
+
+def told_scale(notes: list[str]) -> Scale | None:
+    """The scale of a note `scale: percent` or `scale: fraction`, which counts for more than any heading."""
+    return scale_of(told(notes).get("scale", ""))
+
+
 def note_how(notes: list[str]) -> How:
     """Geometry, instrument and illumination from notes such as `geometry: 45:0`."""
-    told = {match[1].casefold(): match[2].strip() for note in notes if (match := TOLD.match(note[:LONGEST_NOTE]))}
-    geometry = told.get("geometry", "")
+    said = told(notes)
+    geometry = said.get("geometry", "")
     speaking = [note[:LONGEST_NOTE] for note in notes if quantity_of(note[:LONGEST_NOTE]) == "reflectance"]
-    return How(geometry, told.get("instrument", ""), told.get("illumination", told.get("condition", "")),
-               specular_of(" ".join([geometry, *speaking])))
+    specular = f"specular {said['specular']}" if "specular" in said else " ".join([geometry, *speaking])
+    return How(geometry, said.get("instrument", ""), said.get("illumination", said.get("condition", "")),
+               specular_of(specular))
 
 
 def wavelength_label(text: object) -> str | None:

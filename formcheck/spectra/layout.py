@@ -21,6 +21,8 @@ from formcheck.spectra.headings import (
     note_scale,
     quantity_of,
     scale_of,
+    told_quantity,
+    told_scale,
     wavelength_label,
 )
 from formcheck.spectra.text_rows import WHAT, begins_a_number
@@ -114,11 +116,10 @@ def _cell(row: list[Cell], at: int, name: str) -> Cell:
 def _column(name: str, number: int, wavelengths: list[Cell], values: list[Cell], notes: list[str], *,
             alone: bool) -> Written:
     """A value column; what its heading does not say, the notes may."""
-    quantity = quantity_of(name)
+    quantity = told_quantity(notes) or quantity_of(name) or note_quantity(notes)
     letter = letter_quantity(name) if alone else None
-    return Written((name,), number, wavelengths, values, quantity or note_quantity(notes) or letter,
-                   quantity_is_sure=bool(quantity or note_quantity(notes)),
-                   scale=scale_of(name) or note_scale(notes), how=note_how(notes))
+    return Written((name,), number, wavelengths, values, quantity or letter, quantity_is_sure=bool(quantity),
+                   scale=told_scale(notes) or scale_of(name) or note_scale(notes), how=note_how(notes))
 
 
 def _refuse_other_unit(heading: str, header: list[Cell], file: str) -> None:
@@ -133,6 +134,8 @@ def _refuse_other_unit(heading: str, header: list[Cell], file: str) -> None:
 def _inner_wavelength_column(rows: Rows) -> tuple[int, int] | None:
     """(row of headings, column) where a column further right is headed as the wavelength."""
     for i, row in enumerate(rows[:-1][:MOST_NOTE_LINES]):
+        if names_wavelength(row[0].value):
+            return None
         for k, cell in enumerate(row):
             if k and names_wavelength(cell.value) and k < len(rows[i + 1]) and _in_range(rows[i + 1][k]):
                 return i, k
@@ -238,10 +241,10 @@ def _samples_in_rows(rows: Rows, at: int, comments: list[str], file: str, decima
     labels = list(dict.fromkeys(_without_digits(text) for text in headings[start:end]))
     beside = [text for k, text in enumerate(headings) if not start <= k < end]
     notes = _notes(rows[:at], comments)
-    quantity = note_quantity([*labels, *beside]) or note_quantity(notes)
+    quantity = told_quantity(notes) or note_quantity([*labels, *beside]) or note_quantity(notes)
     letter = letter_quantity(labels[0]) if len(labels) == 1 else None
     scales = {scale for text in labels if (scale := scale_of(text))}
-    scale = scales.pop() if len(scales) == 1 else note_scale(beside) or note_scale(notes)
+    scale = told_scale(notes) or (scales.pop() if len(scales) == 1 else note_scale(beside) or note_scale(notes))
     how, spectra = note_how(notes), []
     for n, row in enumerate(body, 1):
         _refuse_longer(file, row, len(header), "the header")

@@ -11,6 +11,8 @@ import numpy as np
 Quantity = Literal["reflectance", "transmittance", "absorbance", "epsilon_l_mol_cm", "absorptivity_l_g_cm",
                    "relative_power"]
 Scale = Literal["percent", "fraction"]
+# Quantities that stand in for one another in headings: all three are called absorbance or extinction.
+ABSORPTION = ("absorbance", "epsilon_l_mol_cm", "absorptivity_l_g_cm")
 RATIOS = ("reflectance", "transmittance")  # the quantities that may be written as percent or as a fraction
 
 # Words for the geometries of CIE 15:2018, 5.1 and ISO 13655, as instruments and standards write them.

@@ -11,7 +11,7 @@ from dataclasses import dataclass, field
 from xml.parsers import expat
 
 from formcheck.cells import Cell
-from formcheck.spectra.measured import How, Quantity
+from formcheck.spectra.measured import How, Quantity, specular_of
 from formcheck.spectra.written import NUMBER, Written, WrittenFile
 from formcheck.trouble import InputError, shown, trouble
 
@@ -32,6 +32,7 @@ KEPT = {*SPECTRA, "SpectralPoint", "MeasurementType", "SphereGeometry", "SingleA
 NOT_STATED = "not stated"  # what a writer puts where a geometry must stand and none is known
 SPHERE = {"Specular_Included": "sphere, specular included", "Specular_Excluded": "sphere, specular excluded",
           "Diffuse": "sphere, diffuse"}
+CONDITIONS = {"M0_Incandescent": "M0", "M1_Daylight": "M1", "M2_UVExcluded": "M2", "M3_Polarized": "M3"}  # ISO 13655
 RING = {"Annular": "a", "Uniplanar": ""}
 
 
@@ -154,7 +155,8 @@ class _Walk:
     def end(self, _: str) -> None:
         element = self.path.pop()
         if self.specification is not None and element.name in KEPT and element.name not in SPECTRA:
-            self.specification[element.name] = element.plain().strip()
+            custom = element.attributes.get("CustomType", "")
+            self.specification[element.name] = custom.strip() or element.plain().strip()
         if element.name == "ColorSpecification":
             self.specification = None
         elif element.name == "Object":
@@ -221,7 +223,7 @@ def _how(specification: dict[str, str]) -> How:
     sphere = SPHERE.get(specification.get("SphereGeometry", ""), "")
     angles = [specification.get(f"{word}Angle", "") for word in ("Illumination", "Measurement")]
     geometry = sphere or specification.get("UnknownGeometry", "")
-    specular = {"Specular_Included": True, "Specular_Excluded": False}.get(specification.get("SphereGeometry", ""))
+    specular = specular_of(geometry)
     if all(NUMBER.fullmatch(angle) for angle in angles):
         lit, seen = (float(angle.replace(",", ".")) for angle in angles)
         ring = RING.get(specification.get("SingleAngleConfiguration", ""), "")
@@ -229,7 +231,8 @@ def _how(specification: dict[str, str]) -> How:
         specular = False if {round(lit), round(seen)} == {0, 45} else None
     instrument = " ".join(filter(None, (specification.get(word, "") for word in (
         "Manufacturer", "Model", "SerialNumber"))))
-    light = [specification.get(word, "") for word in ("DeviceIllumination", "DeviceFilter")]
+    light = [specification.get("DeviceIllumination", ""), specification.get("DeviceFilter", "")]
+    light = [CONDITIONS.get(word, word) for word in light if word != "Filter_None"]
     return How("" if geometry == NOT_STATED else geometry, instrument, " ".join(filter(None, light)), specular)
 
 

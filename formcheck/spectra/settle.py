@@ -8,14 +8,12 @@ import numpy as np
 
 from formcheck.spectra.fluorescence import fluorescence_signs
 from formcheck.spectra.headings import LONGEST_NM, SHORTEST_NM
-from formcheck.spectra.measured import RATIOS, MeasuredSpectrum, Quantity, Scale
+from formcheck.spectra.measured import ABSORPTION, RATIOS, MeasuredSpectrum, Quantity, Scale
 from formcheck.spectra.ranges import step_notes
 from formcheck.spectra.scale import as_fractions, refuse_scale
 from formcheck.spectra.written import Written, WrittenFile, number
 from formcheck.trouble import trouble
 
-# Quantities that stand in for one another in headings: all three are called absorbance or extinction.
-ABSORPTION = ("absorbance", "epsilon_l_mol_cm", "absorptivity_l_g_cm")
 NOT_SAID = ("a heading or a note such as `reflectance (%)` or `absorbance`; or say what it is where the file is named "
             "(`scale: percent` or `scale: fraction` for a reflectance)")
 
