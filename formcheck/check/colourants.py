@@ -10,7 +10,7 @@ from formcheck.check.cited import cited_by
 from formcheck.check.parts import Parts
 from formcheck.check.record import ColourantBasis
 from formcheck.materials.elements import molar_mass_of
-from formcheck.materials.record import DyeForm, Material, SpectrumFile
+from formcheck.materials.record import DyeForm, KubelkaMunkFile, Material, SpectrumFile
 from formcheck.materials.shelf import Found, data_file
 from formcheck.spectra.bands import (
     default_half_heights,
@@ -52,6 +52,9 @@ class PigmentOptics:
     density_g_ml: float
     most_volume_fraction: float | None
     name: str
+    model_error_de00: float | None = None  # of panels left out in learning; it holds the doubt of K and S within it
+    surface: tuple[float, float] | None = None  # k1, k2 learned with K and S
+    thickness_known: bool = True
 
 
 @dataclass
@@ -97,12 +100,38 @@ def _add_pigment(known: Colourants, found: Found, c: int) -> None:
     k, s = (np.maximum(resample(wavelength_nm, values)[0], 0.0) for values in k_and_s)
     known.held += held_beyond(f"K and S of {name}", wavelength_nm)
     density = material.density_g_cm3.value
-    known.pigments.append(PigmentOptics(c, k, s, record.relative_sd, density, record.most_volume_fraction, name))
+    surface = None if record.k1 is None or record.k2 is None else (record.k1, record.k2)
+    known.pigments.append(PigmentOptics(
+        c, k, s, record.relative_sd if record.model_error_de00 is None else 0.0, density,
+        record.most_volume_fraction, name, record.model_error_de00, surface, record.thickness_known))
     source = cited_by(material, record.source)
     measured = source.kind in ("measured", "user", "invented_demo", "supplier")
     known.basis.append(ColourantBasis(
         material=name, basis="measured" if measured else "optical constants", source=source,
-        error=f"K and S within {record.relative_sd:.0%} (one standard deviation)"))
+        error=_error_of(record)))
+
+
+def _error_of(record: KubelkaMunkFile) -> str:
+    if record.model_error_de00 is None:
+        return f"K and S within {record.relative_sd:.0%} (one standard deviation)"
+    return f"panels left out in learning were off by ΔE00 {record.model_error_de00:.2g} (root mean square)"
+
+
+def model_error(known: Colourants) -> tuple[float, str]:
+    """The largest error that any of the pigments showed in learning, in ΔE00, and whose it is; 0 where none did."""
+    shown = [(one.model_error_de00, one.name) for one in known.pigments if one.model_error_de00 is not None]
+    return max(shown, default=(0.0, ""))
+
+
+def learned_surface(known: Colourants) -> tuple[tuple[float, float] | None, list[str]]:
+    """Surface constants that all learned pigments share, or None; and what to say where they do not."""
+    learned = {one.surface for one in known.pigments if one.surface}
+    if len(learned) == 1 and all(one.surface for one in known.pigments):
+        return learned.pop(), []
+    if not learned:
+        return None, []
+    return None, ["the surface that K and S were learned with: the pigments do not share one, so the film's index "
+                  "stands in for it"]
 
 
 def _add_dye(known: Colourants, found: Found, c: int) -> None:

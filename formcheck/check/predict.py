@@ -46,6 +46,7 @@ class Setting:
     ground_in_air: bool = True  # measured in air, so that its own surface is taken off first
     ground_specular_included: bool = True
     film_index: float = 1.5
+    learned_surface: tuple[float, float] | None = None  # k1, k2 fitted with the K and S, in place of the index
     specular_included: bool = True
 
 
@@ -105,13 +106,34 @@ def predict_spectrum(optics: Optics, setting: Setting, variants: Variants) -> np
     assert setting.ground is not None
     thickness = variants.wet_thickness_um[:, None]
     volume = pigment_volume_fraction(optics, variants)
+    k_x = (volume * variants.k_scale) @ optics.k * thickness
+    s_x = (volume * variants.s_scale) @ optics.s * thickness
+    dye_absorbance = per_cm * thickness / UM_PER_CM
+    if setting.learned_surface:
+        return _under_learned_surface(setting, k_x, s_x, dye_absorbance)
     return layer_reflectance(
-        k_x=(volume * variants.k_scale) @ optics.k * thickness,
-        s_x=(volume * variants.s_scale) @ optics.s * thickness,
-        dye_absorbance=per_cm * thickness / UM_PER_CM,
+        k_x=k_x,
+        s_x=s_x,
+        dye_absorbance=dye_absorbance,
         ground=setting.ground,
         n=setting.film_index,
         specular_included=setting.specular_included,
         ground_in_air=setting.ground_in_air,
         ground_specular_included=setting.ground_specular_included,
     )
+
+
+def _under_learned_surface(setting: Setting, k_x: np.ndarray, s_x: np.ndarray, dye_absorbance: np.ndarray
+                           ) -> np.ndarray:
+    """A film whose K and S were learned together with the constants of its surface, (N, W)."""
+    from formcheck.colour.geometry import GLOSS_IN, GLOSS_OUT, surface_of_constants
+    from formcheck.colour.layers import stack_reflectance
+
+    assert setting.learned_surface is not None and setting.ground is not None
+    k1, k2 = setting.learned_surface
+    return stack_reflectance(
+        ground=setting.ground, k_x=k_x[:, None, :], s_x=s_x[:, None, :], dye_absorbance=dye_absorbance[:, None, :],
+        n=setting.film_index, ground_in_air=setting.ground_in_air,
+        geometry=GLOSS_IN if setting.specular_included else GLOSS_OUT,
+        ground_geometry=GLOSS_IN if setting.ground_specular_included else GLOSS_OUT,
+        air_surface=surface_of_constants(k1=k1, k2=k2, specular_included=setting.specular_included))

@@ -2,10 +2,19 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 
 from formcheck.check.acid import AcidState
-from formcheck.check.colourants import Colourants, colourants_of, missing_reasons
+from formcheck.check.colourants import (
+    Colourants,
+    colourants_of,
+    learned_surface,
+    missing_reasons,
+    model_error,
+)
+from formcheck.check.model_error import model_error_covariance
 from formcheck.check.parts import Parts
 from formcheck.check.predict import Setting, pigment_volume_fraction
 from formcheck.check.prediction_model import Model, draws_of, prediction_model
@@ -34,8 +43,18 @@ def shade_of(batch: Batch, parts: Parts, *, film: FilmState, acid: AcidState, vi
     if reason:
         return None, reason, known
     assert viewing.setting is not None
+    viewing = with_learned_surface(viewing, known)
     model = prediction_model(batch, parts, film, acid, viewing, known, r)
     return _shade(model, viewing, known, form_share, parts, batch, r), "", known
+
+
+def with_learned_surface(viewing: Viewing, known: Colourants) -> Viewing:
+    """The film seen under the surface that its pigments were learned with, where they share one."""
+    constants, said = learned_surface(known)
+    if viewing.setting is None or viewing.setting.ground is None or not (constants or said):
+        return viewing
+    setting = replace(viewing.setting, learned_surface=constants)
+    return replace(viewing, setting=setting, notes=(*viewing.notes, *said))
 
 
 def why_not(batch: Batch, film: FilmState, viewing: Viewing, known: Colourants, form_share, fractions, r: int) -> str:
@@ -64,7 +83,9 @@ def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts:
     drawn_spectra = model.spectra(draws, setting)
     drawn = lab(xyz(drawn_spectra, light, observer), white_point(light, observer))
     estimated = any(one.basis == "box model" for one in known.basis)
-    covariance = np.cov(drawn.T) if estimated else moved.covariance
+    error, whose = model_error(known)
+    of_model = model_error_covariance(moved.value, error) if error else np.zeros((3, 3))
+    covariance = (np.cov(drawn.T) if estimated else moved.covariance) + of_model
     value = model.spectra(x.value[None, :], setting)[0]
     low, high = np.percentile(drawn_spectra, [15.9, 84.1], axis=0)
     wanted, de00, de00_sd, within, words = _against_wanted(viewing, moved.value, covariance)
@@ -80,7 +101,8 @@ def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts:
         probability_within=within, difference_words=words,
         lights=_under_lights(value, viewing), region=_region(drawn, light, observer),
         contrast_ratio=contrast_ratios(model, viewing, x.value[None, :])[0] if setting.ground is not None else None,
-        dominated_by=dominant(moved.share_total, x.label),
+        dominated_by=dominant(moved.share_total, x.label, np.trace(moved.covariance),
+                              (f"model of {whose}", float(np.trace(of_model)))),
         basis=basis_with_shares(known, form_share, parts), left_out=left_out(model, viewing, known, parts, batch, r))
 
 
@@ -141,13 +163,16 @@ def contrast_ratios(model: Model, viewing: Viewing, rows: np.ndarray) -> list[fl
     return [float(ratio) for ratio in contrast_ratio(y_black=y[0], y_white=y[1])]
 
 
-def dominant(share: np.ndarray, label: list[str]) -> str:
-    """The source with the largest part of the variance of L*, a*, b* together."""
-    variance: dict[str, float] = {}
+def dominant(share: np.ndarray, label: list[str], of_inputs: float, of_model: tuple[str, float]) -> str:
+    """The source with the largest part of the variance of L*, a*, b* together.
+
+    `share` (I,) of the variance `of_inputs` by input; `of_model` the name and variance of the model's own error.
+    """
+    variance = {of_model[0]: of_model[1]}
     for name, part in zip(label, share, strict=True):
-        variance[name] = variance.get(name, 0.0) + float(part)
-    name = max(variance, key=lambda one: variance[one])
-    return f"{name} ({variance[name]:.0%} of the variance)" if variance[name] > 0 else ""
+        variance[name] = variance.get(name, 0.0) + float(part) * of_inputs
+    name, whole = max(variance, key=lambda one: variance[one]), sum(variance.values())
+    return f"{name} ({variance[name] / whole:.0%} of the variance)" if whole > 0 else ""
 
 
 def basis_with_shares(known: Colourants, form_share, parts: Parts):
@@ -170,6 +195,8 @@ def left_out(model: Model, viewing: Viewing, known: Colourants, parts: Parts, ba
     if viewing.setting and viewing.setting.ground is not None and viewing.thickness_sd_um == 0:
         said.append("the unevenness of the film, as the recipe gives no `sd` with it")
     said += known.held
+    said += [f"films of {one.name} that do not hide: its K and S were learned without a known thickness"
+             for one in known.pigments if not one.thickness_known]
     said += [f"the fluorescence of {name}" for name in known.fluorescent]
     if known.absorbers and batch.recipes[r].recipe.what not in SOLUTIONS:
         said.append("what drying does to the dyes: their spectra are those of solutions")

@@ -12,13 +12,22 @@ import numpy as np
 
 from formcheck import __version__
 from formcheck.check.acid import acid_state, form_shares
-from formcheck.check.colourants import colourants_of
+from formcheck.check.colourants import colourants_of, model_error
+from formcheck.check.model_error import model_error_covariance
 from formcheck.check.parts import Parts, parts_of
 from formcheck.check.prediction_model import Model, draws_of, inputs_of, prediction_model
 from formcheck.check.record import Swatch, UnderLight, Wanted
 from formcheck.check.record_sweep import ShadeSweep, SweptShade
 from formcheck.check.setting import Viewing, viewing_of
-from formcheck.check.shade import basis_with_shares, contrast_ratios, dominant, left_out, swatches_of, why_not
+from formcheck.check.shade import (
+    basis_with_shares,
+    contrast_ratios,
+    dominant,
+    left_out,
+    swatches_of,
+    why_not,
+    with_learned_surface,
+)
 from formcheck.check.volumes import FilmState, film_state
 from formcheck.colour.cielab import lab
 from formcheck.colour.difference import delta_e_2000, difference_words
@@ -141,6 +150,7 @@ def _swept(written: WrittenRecipe, batch: Batch, parts: Parts, film: FilmState, 
                 raise trouble(written.document.file, f"a shade that cannot be told{at}: {reason}",
                               "what is named, on the recipe or on the record")
         seen[viewings[0].ground_name] = viewings
+    seen = {name: [with_learned_surface(one, known) for one in viewings] for name, viewings in seen.items()}
     first = next(iter(seen.values()))[0]
     model = prediction_model(batch, parts, film, acids[0], first, known, 0)
     shades = [shade for name, viewings in seen.items()
@@ -176,19 +186,24 @@ def _on_ground(name: str, viewings: Sequence[Viewing], model: Model, batch: Batc
     spectra = model.spectra(value, setting)
     under = _under_lights(spectra, first)
     contrast = contrast_ratios(model, first, value) if setting.ground is not None else [None] * len(value)
-    against = _against(moved.value, moved.covariance, first)
-    sds = moved.sd
-    if draws:
-        drawn = [labs(draws_of(one, draws)) for one in inputs]
-        sds = np.array([one.std(axis=0) for one in drawn])
-        against = _against(moved.value, np.array([np.cov(one.T) for one in drawn]), first)
-        for told, one in zip(against, drawn, strict=True):
-            told.update(_counted(one, first))
+    error, whose = model_error(known)
+    of_model = np.array([model_error_covariance(one, error) if error else np.zeros((3, 3)) for one in moved.value])
+    covariance = moved.covariance + of_model
+    drawn = [_drawn(labs(draws_of(one, draws)), extra)
+             for one, extra in zip(inputs, of_model, strict=True) if draws]
+    if drawn:
+        covariance = np.array([np.cov(one.T) for one in drawn])
+    sds = np.sqrt(np.diagonal(covariance, axis1=1, axis2=2))
+    against = _against(moved.value, covariance, first)
+    for told, one in zip(against, drawn, strict=False):
+        told.update(_counted(one, first))
     swatches = swatches_of(moved.value, light, observer)
     return [SweptShade(
         amount=float(row.amounts[r]) if row else None, ground=name, swatch=swatches[r],
         lab_sd=(float(sds[r, 0]), float(sds[r, 1]), float(sds[r, 2])), lights=under[r],
-        contrast_ratio=contrast[r], dominated_by=dominant(moved.share_total[r], inputs[r].label),
+        contrast_ratio=contrast[r], dominated_by=dominant(
+            moved.share_total[r], inputs[r].label, np.trace(moved.covariance[r]),
+            (f"model of {whose}", float(np.trace(of_model[r])))),
         value=spectra[r].tolist(), **against[r]) for r in range(len(value))]
 
 
@@ -200,6 +215,13 @@ def _under_lights(spectra: np.ndarray, viewing: Viewing) -> list[list[UnderLight
     changes = [delta_e_2000(labs[0], one) for one in labs]
     return [[UnderLight(light=light, swatch=swatches[n][r], de00_from_first=float(changes[n][r]))
              for n, light in enumerate(viewing.lights)] for r in range(len(spectra))]
+
+
+def _drawn(labs: np.ndarray, of_model: np.ndarray, seed: int = 21) -> np.ndarray:
+    """Drawn shades (draws, 3), each off besides by what the model may be off."""
+    if not of_model.any():
+        return labs
+    return labs + np.random.default_rng(seed).multivariate_normal(np.zeros(3), of_model, size=len(labs))
 
 
 def _counted(drawn: np.ndarray, viewing: Viewing) -> dict:

@@ -146,7 +146,7 @@ def suggest(shelf: Shelf, name: str) -> str:
     close = closest_names(shelf, name)
     if close:
         return "did you mean " + " or ".join(repr(word) for word in close) + "?"
-    return "a material of the shelf (see `formcheck shelf`), or a record of it in the recipe"
+    return "a material of the shelf (see `formcheck shelf`)"
 
 
 def closest_names(shelf: Shelf, name: str, *, most: int = 3) -> list[str]:
