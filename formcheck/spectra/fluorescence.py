@@ -20,7 +20,8 @@ HIGH_PLATEAU = 0.6  # of the peak: below it the fall is an absorption, as in any
 FLAT_WITHIN = 0.06  # of the peak: the plateau neither rises nor falls by more
 # Whitened by a brightener: highest between these wavelengths, level and bright beyond the last.
 BRIGHTENED_NM, LEVEL_FROM_NM = (415.0, 465.0), 520.0
-BRIGHT, LEAST_EXCESS = 0.6, 0.03
+BRIGHT, LEAST_EXCESS = 0.7, 0.03
+LEAST_PEAK = 0.92  # below it a pale blue tint looks the same
 
 
 def fluorescence_signs(wavelength_nm, reflectance) -> list[str]:
@@ -81,7 +82,7 @@ def _brightener(x, y) -> list[str]:
     if not blue.any() or behind.sum() < 20:
         return []
     level, top = float(np.median(y[behind])), float(y[blue].max())
-    if level < BRIGHT or np.ptp(y[behind]) > FLAT_WITHIN or top - level < LEAST_EXCESS or top < y.max() - 1e-12:
+    if level < BRIGHT or np.ptp(y[behind]) > FLAT_WITHIN or top - level < LEAST_EXCESS or top < max(y.max() - 1e-12, LEAST_PEAK):
         return []
     return [f"a peak at {x[blue][np.argmax(y[blue])]:g} nm, {top - level:.3f} above a level white: an optical "
             "brightener looks so; outside the model"]
