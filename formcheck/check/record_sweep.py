@@ -12,6 +12,43 @@ from formcheck.check.record import DEFERRAL, ColourantBasis, Part, Swatch, Under
 VERSION = 1
 
 
+class Difference(Part):
+    """One difference formula with its lightness, chroma and hue parts, the parts in words."""
+
+    formula: str
+    value: float
+    lightness: float
+    chroma: float
+    hue: float
+    words: str
+
+
+class Metamerism(Part):
+    """Special metamerism index for a change from the first light to this one, in ΔE00."""
+
+    light: str
+    index_de00: float
+
+
+class Match(Part):
+    """Against a wanted spectrum."""
+
+    rms: float
+    goodness_of_fit: float
+    word: str
+    metamerism: list[Metamerism] = Field(default_factory=list)
+
+
+class Hiding(Part):
+    """Film that reaches the contrast ratio over the charts, and the area a litre then covers; or why none."""
+
+    contrast: float
+    wet_um: float | None = None
+    dry_um: float | None = None
+    spreading_m2_l: float | None = None
+    reason: str = ""
+
+
 class SweptShade(Part):
     """One amount on one ground. `shade` of the first light; `lights` holds every light."""
 
@@ -26,6 +63,10 @@ class SweptShade(Part):
     difference_words: str = ""
     contrast_ratio: float | None = None
     dominated_by: str = ""
+    munsell: str = ""
+    differences: list[Difference] = Field(default_factory=list)
+    match: Match | None = None
+    hiding: Hiding | None = None
     value: list[float]  # reflectance or transmittance at the wavelengths of the sweep
 
 

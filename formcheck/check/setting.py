@@ -11,7 +11,7 @@ from formcheck.check.predict import Setting
 from formcheck.check.volumes import FilmState, wet_film_um
 from formcheck.colour.cielab import lab
 from formcheck.colour.grounds import ground, ground_names, ground_record
-from formcheck.colour.lights import light_name
+from formcheck.colour.lights import Light, light_name
 from formcheck.colour.tristimulus import white_point, xyz
 from formcheck.documents import FieldPath, path_text
 from formcheck.recipe.model import SpectrumReference, Wanted
@@ -42,6 +42,11 @@ class Viewing:
     tolerance: float | None
     notes: tuple[str, ...]
     reason: str = ""
+    wanted_spectrum: np.ndarray | None = None
+
+    def light(self, name: str) -> Light:
+        """What the colour room asks for to see under one of `lights`."""
+        return name
 
 
 def viewing_of(written: WrittenRecipe, parts: Parts, film: FilmState, r: int = 0) -> Viewing:
@@ -50,12 +55,12 @@ def viewing_of(written: WrittenRecipe, parts: Parts, film: FilmState, r: int = 0
     lights = _lights(written)
     wanted = recipe.wanted
     observer = wanted.observer or recipe.observer if wanted else recipe.observer
-    wanted_lab, wanted_notes = _wanted_lab(written, lights[0], observer)
+    wanted_lab, wanted_spectrum, wanted_notes = _wanted_shade(written, lights[0], observer)
     tolerance = wanted.tolerance if wanted else None
 
     def seen(setting: Setting | None, *, wet=0.0, sd=0.0, ground_name="", geometry="", notes=(), reason=""):
         return Viewing(setting, wet, sd, ground_name, geometry, lights, observer, wanted_lab, tolerance,
-                       (*wanted_notes, *notes), reason)
+                       (*wanted_notes, *notes), reason, wanted_spectrum)
 
     if recipe.what in SOLUTIONS and recipe.film is None:
         path = recipe.path_length_cm
@@ -98,17 +103,17 @@ def _lights(written: WrittenRecipe) -> tuple[str, ...]:
     return tuple(dict.fromkeys(found))
 
 
-def _wanted_lab(written: WrittenRecipe, light: str, observer: int
-                ) -> tuple[tuple[float, float, float] | None, list[str]]:
-    """CIELAB of the wanted shade, and what to say of the spectrum it comes from."""
+def _wanted_shade(written: WrittenRecipe, light: str, observer: int
+                  ) -> tuple[tuple[float, float, float] | None, np.ndarray | None, list[str]]:
+    """CIELAB of the wanted shade, the spectrum it comes from, and what to say of that."""
     wanted = written.recipe.wanted
     if wanted is None:
-        return None, []
+        return None, None, []
     if wanted.lab is not None:
-        return (wanted.lab[0], wanted.lab[1], wanted.lab[2]), []
+        return (wanted.lab[0], wanted.lab[1], wanted.lab[2]), None, []
     _, values, notes = _measured(written, wanted, "wanted")
     found = lab(xyz(values, light, observer), white_point(light, observer))
-    return (float(found[0]), float(found[1]), float(found[2])), notes
+    return (float(found[0]), float(found[1]), float(found[2])), values, notes
 
 
 def _ground(written: WrittenRecipe) -> tuple[str, np.ndarray, bool, bool | None, list[str]]:

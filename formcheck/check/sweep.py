@@ -12,12 +12,13 @@ import numpy as np
 
 from formcheck import __version__
 from formcheck.check.acid import acid_state, form_shares
+from formcheck.check.colorimetry import differences, hiding_of, match_of, munsell_of
 from formcheck.check.colourants import colourants_of, model_error
 from formcheck.check.model_error import model_error_covariance
 from formcheck.check.parts import Parts, parts_of
 from formcheck.check.prediction_model import Model, draws_of, inputs_of, prediction_model
 from formcheck.check.record import Swatch, UnderLight, Wanted
-from formcheck.check.record_sweep import ShadeSweep, SweptShade
+from formcheck.check.record_sweep import Hiding, ShadeSweep, SweptShade
 from formcheck.check.setting import Viewing, viewing_of
 from formcheck.check.shade import (
     basis_with_shares,
@@ -198,12 +199,18 @@ def _on_ground(name: str, viewings: Sequence[Viewing], model: Model, batch: Batc
     for told, one in zip(against, drawn, strict=False):
         told.update(_counted(one, first))
     swatches = swatches_of(moved.value, light, observer)
+    hiding: list[Hiding] | list[None] = [None] * len(value)
+    if setting.ground is not None and not setting.learned_surface:
+        hiding = hiding_of(model.optics, setting, model.variants(value), float(film.solids_volume.value[0]))
+    wanted = None if first.wanted_lab is None else np.array(first.wanted_lab)
     return [SweptShade(
         amount=float(row.amounts[r]) if row else None, ground=name, swatch=swatches[r],
         lab_sd=(float(sds[r, 0]), float(sds[r, 1]), float(sds[r, 2])), lights=under[r],
         contrast_ratio=contrast[r], dominated_by=dominant(
             moved.share_total[r], inputs[r].label, np.trace(moved.covariance[r]),
             (f"model of {whose}", float(np.trace(of_model[r])))),
+        munsell=munsell_of(spectra[r]), match=match_of(spectra[r], first), hiding=hiding[r],
+        differences=[] if wanted is None else differences(wanted, moved.value[r]),
         value=spectra[r].tolist(), **against[r]) for r in range(len(value))]
 
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from rich.console import Console
 from rich.text import Text
 
-from formcheck.check.record_sweep import ShadeSweep, SweptShade
+from formcheck.check.record_sweep import Hiding, ShadeSweep, SweptShade
 from formcheck.report.numbers import plain, probability, with_sd
 from formcheck.report.shade_words import coordinate, observer_text
 from formcheck.report.terminal_parts import colour_warning, heading, labelled, paragraph, speaking, strip, table
@@ -97,9 +97,36 @@ def _show_ground(console: Console, sweep: ShadeSweep, ground: str) -> None:
     strip(console, [hex_colour(one.swatch) for one in shades], width=STRIP_WIDTH, height=STRIP_HEIGHT)
     columns: list[str | tuple[str, str]] = [("hex", "whole"), *((name, "right") for name in brief_columns(sweep))]
     table(console, columns, [brief_cells(sweep, one) for one in shades])
+    if len(shades) == 1:
+        labelled(console, detail_rows(shades[0]))
     surest = max(shades, key=lambda one: sum(one.lab_sd))
     if surest.dominated_by:
         labelled(console, [("least sure of", one_line(surest.dominated_by))])
+
+
+def detail_rows(one: SweptShade) -> list[tuple[str, str]]:
+    """What a table has no room for, of one shade; the page shows the same."""
+    rows = [("Munsell", one.munsell)] if one.munsell else []
+    for other in one.differences:
+        parts = f"lightness {plain(other.lightness)}, chroma {plain(other.chroma)}, hue {plain(other.hue)}"
+        rows.append((other.formula, f"{plain(other.value)}: {parts}; {one_line(other.words)}"))
+    rows += [(f"to light {light.light}", f"ΔE00 {plain(light.de00_from_first)}") for light in one.lights[1:]]
+    if one.match:
+        rows.append(("spectra", f"RMS {plain(one.match.rms)}, goodness of fit {one.match.goodness_of_fit:.4f}, "
+                                f"{one.match.word}"))
+        rows += [("metamerism", f"{index.light}: ΔE00 {plain(index.index_de00)}") for index in one.match.metamerism]
+    if one.hiding:
+        rows.append(("hiding", hiding_text(one.hiding)))
+    return rows
+
+
+def hiding_text(hiding: Hiding) -> str:
+    """The film that hides, in words, or why none does."""
+    if hiding.wet_um is None:
+        return f"contrast {hiding.contrast:g}: {hiding.reason}"
+    dry = f", {plain(hiding.dry_um)} µm dry" if hiding.dry_um is not None else ""
+    rate = f", {plain(hiding.spreading_m2_l)} m²/L" if hiding.spreading_m2_l is not None else ""
+    return f"contrast {hiding.contrast:g} at {plain(hiding.wet_um)} µm wet{dry}{rate}"
 
 
 def _show_list(console: Console, title: str, lines: list[str]) -> None:

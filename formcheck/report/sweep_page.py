@@ -8,7 +8,7 @@ from formcheck.report.numbers import plain
 from formcheck.report.plot import Axis, Series, line_plot, visible_spectrum
 from formcheck.report.sheet import at_both_widths, document
 from formcheck.report.swatches import chip, chips
-from formcheck.report.sweep import cells_of, columns_of, head_rows
+from formcheck.report.sweep import cells_of, columns_of, detail_rows, head_rows, hiding_text
 from formcheck.report.words import hex_colour, one_line
 
 COORDINATES = ("L*", "a*", "b*")
@@ -35,8 +35,19 @@ def _ground(sweep: ShadeSweep, ground: str, *, id: str) -> Markup:
     curves = [_coordinates(sweep, shades, id=id)] if len(shades) > 1 else []
     kinds: list[Column] = [(name, "number") for name in columns_of(sweep)]
     rows = [cells_of(sweep, one) for one in shades]
+    details = [definitions(detail_rows(shades[0]))] if len(shades) == 1 else [_details(sweep, shades, ground)]
     return section(2, one_line(ground), drawn, curves, _spectra(sweep, shades, id=id),
-                   table(f"Shades on {one_line(ground)}", kinds, rows), id=id)
+                   table(f"Shades on {one_line(ground)}", kinds, rows), details, id=id)
+
+
+def _details(sweep: ShadeSweep, shades: list[SweptShade], ground: str) -> Markup:
+    """Munsell notation, other difference formulas and hiding of every amount."""
+    formulas = [other.formula for other in shades[0].differences[1:]]
+    kinds: list[Column] = [(f"{one_line(sweep.varied)}, {sweep.unit}", "number"), ("Munsell", "text"),
+                           *((name, "number") for name in formulas), ("hiding", "text")]
+    rows = [[plain(one.amount), one.munsell, *(plain(other.value) for other in one.differences[1:]),
+             hiding_text(one.hiding) if one.hiding else ""] for one in shades]
+    return table(f"More of the shades on {one_line(ground)}", kinds, rows)
 
 
 def _label(sweep: ShadeSweep, one: SweptShade) -> str:

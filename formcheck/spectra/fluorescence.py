@@ -82,7 +82,8 @@ def _brightener(x, y) -> list[str]:
     if not blue.any() or behind.sum() < 20:
         return []
     level, top = float(np.median(y[behind])), float(y[blue].max())
-    if level < BRIGHT or np.ptp(y[behind]) > FLAT_WITHIN or top - level < LEAST_EXCESS or top < max(y.max() - 1e-12, LEAST_PEAK):
+    is_level = level >= BRIGHT and np.ptp(y[behind]) <= FLAT_WITHIN
+    if not is_level or top - level < LEAST_EXCESS or top < max(y.max() - 1e-12, LEAST_PEAK):
         return []
     return [f"a peak at {x[blue][np.argmax(y[blue])]:g} nm, {top - level:.3f} above a level white: an optical "
             "brightener looks so; outside the model"]

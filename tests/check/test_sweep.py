@@ -97,3 +97,37 @@ def test_draws_and_first_order_agree():
 def test_too_few_draws_are_refused():
     with pytest.raises(InputError, match="--draws"):
         sweep_shades(INK, draws=3)
+
+
+def test_one_shade_carries_the_other_figures_of_the_trade(tmp_path):
+    one = sweep_shades(DEMO / "quarry_white_wall_coating.yaml").shades[0]
+    assert [other.formula for other in one.differences] == ["ΔE00", "ΔE*ab", "CMC(2:1)"]
+    assert one.differences[0].value == pytest.approx(one.de00, abs=1e-9)
+    for other in one.differences[:2]:
+        parts = (other.lightness, other.chroma, other.hue)
+        assert sum(part**2 for part in parts) == pytest.approx(other.value**2, rel=0.15)  # ΔE00 has a cross term
+    assert one.munsell.endswith("1.2") and " 9.0/" in one.munsell
+
+
+def test_the_film_that_hides_reaches_the_ratio(tmp_path):
+    """Made at the thickness it names, the film over the charts has a contrast ratio of 0.98 (ISO 6504-3)."""
+    path = DEMO / "quarry_white_wall_coating.yaml"
+    hiding = sweep_shades(path).shades[0].hiding
+    text = path.read_text(encoding="utf-8").replace("shelf: shelf", f"shelf: {DEMO / 'shelf'}")
+    (tmp_path / "a.yaml").write_text(text.replace("wet: 100 um", f"wet: {hiding.wet_um:.6f} um"), encoding="utf-8")
+    assert sweep_shades(tmp_path / "a.yaml").shades[0].contrast_ratio == pytest.approx(0.98, abs=1e-5)
+    assert hiding.spreading_m2_l == pytest.approx(1000 / hiding.wet_um)
+
+
+def test_a_wanted_spectrum_of_its_own_matches_wholly(tmp_path):
+    one = sweep_shades(INK).shades[0]
+    wavelength_nm = sweep_shades(INK).wavelength_nm
+    rows = "".join(f"{nm:g},{value!r}\n" for nm, value in zip(wavelength_nm, one.value, strict=True))
+    (tmp_path / "wanted.csv").write_text("wavelength_nm,reflectance (0 to 1)\n" + rows, encoding="utf-8")
+    text = written_with(tmp_path, "80 g").read_text(encoding="utf-8")
+    text = text.replace("lab: [37, -9, -32]", f"spectrum: {tmp_path / 'wanted.csv'}")
+    (tmp_path / "b.yaml").write_text(text, encoding="utf-8")
+    shade = sweep_shades(tmp_path / "b.yaml").shades[0]
+    assert shade.de00 == pytest.approx(0, abs=1e-3) and shade.match.goodness_of_fit == pytest.approx(1, abs=1e-9)
+    assert [index.light for index in shade.match.metamerism] == ["A", "LED-B3"]
+    assert all(index.index_de00 < 1e-3 for index in shade.match.metamerism)
