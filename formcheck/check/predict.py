@@ -48,6 +48,8 @@ class Setting:
     film_index: float = 1.5
     learned_surface: tuple[float, float] | None = None  # k1, k2 fitted with the K and S, in place of the index
     specular_included: bool = True
+    directional: bool = False  # 45:0 instead of d:8
+    ground_directional: bool = False
 
 
 @dataclass(frozen=True)
@@ -109,8 +111,8 @@ def predict_spectrum(optics: Optics, setting: Setting, variants: Variants) -> np
     k_x = (volume * variants.k_scale) @ optics.k * thickness
     s_x = (volume * variants.s_scale) @ optics.s * thickness
     dye_absorbance = per_cm * thickness / UM_PER_CM
-    if setting.learned_surface:
-        return _under_learned_surface(setting, k_x, s_x, dye_absorbance)
+    if setting.learned_surface or setting.directional:
+        return _as_stack(setting, k_x, s_x, dye_absorbance)
     return layer_reflectance(
         k_x=k_x,
         s_x=s_x,
@@ -123,17 +125,21 @@ def predict_spectrum(optics: Optics, setting: Setting, variants: Variants) -> np
     )
 
 
-def _under_learned_surface(setting: Setting, k_x: np.ndarray, s_x: np.ndarray, dye_absorbance: np.ndarray
-                           ) -> np.ndarray:
-    """A film whose K and S were learned together with the constants of its surface, (N, W)."""
-    from formcheck.colour.geometry import GLOSS_IN, GLOSS_OUT, surface_of_constants
+def _as_stack(setting: Setting, k_x: np.ndarray, s_x: np.ndarray, dye_absorbance: np.ndarray) -> np.ndarray:
+    """A film seen in 45:0, or under the surface whose constants were learned with its K and S, (N, W)."""
+    from formcheck.colour.geometry import DIRECTIONAL, GLOSS_IN, GLOSS_OUT, surface_of_constants
     from formcheck.colour.layers import stack_reflectance
 
-    assert setting.learned_surface is not None and setting.ground is not None
-    k1, k2 = setting.learned_surface
+    def geometry(directional: bool, specular_included: bool) -> str:
+        return DIRECTIONAL if directional else GLOSS_IN if specular_included else GLOSS_OUT
+
+    assert setting.ground is not None
+    surface = None
+    if setting.learned_surface:
+        k1, k2 = setting.learned_surface
+        surface = surface_of_constants(k1=k1, k2=k2, specular_included=setting.specular_included)
     return stack_reflectance(
         ground=setting.ground, k_x=k_x[:, None, :], s_x=s_x[:, None, :], dye_absorbance=dye_absorbance[:, None, :],
-        n=setting.film_index, ground_in_air=setting.ground_in_air,
-        geometry=GLOSS_IN if setting.specular_included else GLOSS_OUT,
-        ground_geometry=GLOSS_IN if setting.ground_specular_included else GLOSS_OUT,
-        air_surface=surface_of_constants(k1=k1, k2=k2, specular_included=setting.specular_included))
+        n=setting.film_index, ground_in_air=setting.ground_in_air, air_surface=surface,
+        geometry=geometry(setting.directional, setting.specular_included),
+        ground_geometry=geometry(setting.ground_directional, setting.ground_specular_included))

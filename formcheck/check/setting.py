@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
+from pathlib import Path
 
 import numpy as np
 
@@ -11,7 +12,7 @@ from formcheck.check.predict import Setting
 from formcheck.check.volumes import FilmState, wet_film_um
 from formcheck.colour.cielab import lab
 from formcheck.colour.grounds import ground, ground_names, ground_record
-from formcheck.colour.lights import Light, light_name
+from formcheck.colour.lights import Light, light_name, table
 from formcheck.colour.tristimulus import white_point, xyz
 from formcheck.documents import FieldPath, path_text
 from formcheck.recipe.model import SpectrumReference, Wanted
@@ -44,23 +45,25 @@ class Viewing:
     reason: str = ""
     wanted_spectrum: np.ndarray | None = None
 
+    light_of: dict[str, Light] = field(default_factory=dict)
+
     def light(self, name: str) -> Light:
-        """What the colour room asks for to see under one of `lights`."""
-        return name
+        """What the colour room asks for to see under one of `lights`: its name, or its power."""
+        return self.light_of.get(name, name)
 
 
 def viewing_of(written: WrittenRecipe, parts: Parts, film: FilmState, r: int = 0) -> Viewing:
     """Everything of the recipe that seeing hangs on; InputError for an unknown light or ground, a broken file."""
     recipe = written.recipe
-    lights = _lights(written)
+    lights, light_of = _lights(written)
     wanted = recipe.wanted
     observer = wanted.observer or recipe.observer if wanted else recipe.observer
-    wanted_lab, wanted_spectrum, wanted_notes = _wanted_shade(written, lights[0], observer)
+    wanted_lab, wanted_spectrum, wanted_notes = _wanted_shade(written, light_of[lights[0]], observer)
     tolerance = wanted.tolerance if wanted else None
 
     def seen(setting: Setting | None, *, wet=0.0, sd=0.0, ground_name="", geometry="", notes=(), reason=""):
         return Viewing(setting, wet, sd, ground_name, geometry, lights, observer, wanted_lab, tolerance,
-                       (*wanted_notes, *notes), reason, wanted_spectrum)
+                       (*wanted_notes, *notes), reason, wanted_spectrum, light_of)
 
     if recipe.what in SOLUTIONS and recipe.film is None:
         path = recipe.path_length_cm
@@ -80,30 +83,49 @@ def viewing_of(written: WrittenRecipe, parts: Parts, film: FilmState, r: int = 0
     notes += [index_note] if index_note else []
     gloss = recipe.specular == "included"
     in_air_gloss = gloss if with_gloss is None else with_gloss
+    directional = recipe.geometry == "45:0"
     sd = (recipe.film.sd_um or 0.0) * wet / recipe.film.thickness_um
     setting = Setting(ground=values, ground_in_air=in_air, ground_specular_included=in_air_gloss,
-                      film_index=index, specular_included=gloss)
+                      film_index=index, specular_included=gloss and not directional, directional=directional,
+                      ground_directional=directional and with_gloss is None)
     return seen(setting, wet=wet, sd=sd, ground_name=name, notes=notes,
-                geometry=f"film of {wet:.3g} um wet over {name}, mirror reflection {recipe.specular}")
+                geometry=f"film of {wet:.3g} um wet over {name}, "
+                         + ("45:0" if directional else f"d:8, mirror reflection {recipe.specular}"))
 
 
-def _lights(written: WrittenRecipe) -> tuple[str, ...]:
-    """Names as the table writes them; the light of the wanted shade comes first."""
+def _lights(written: WrittenRecipe) -> tuple[tuple[str, ...], dict[str, Light]]:
+    """Names of the lights, that of the wanted shade first, and what each name stands for."""
     recipe = written.recipe
-    named: list[tuple[str, FieldPath]] = []
-    if recipe.wanted:
-        named.append((recipe.wanted.light, ("wanted", "light")))
-    named += [(light, ("lights", n)) for n, light in enumerate(recipe.lights)]
-    found: list[str] = []
-    for light, path in named or [(USUAL_LIGHT, ())]:
+    given: dict[str, Light] = {}
+    named: list[tuple[str, FieldPath]] = [(recipe.wanted.light, ("wanted", "light"))] if recipe.wanted else []
+    for n, light in enumerate(recipe.lights):
+        if isinstance(light, SpectrumReference):
+            given[Path(light.spectrum).stem] = _given_light(written, light, n)
+            named.append((Path(light.spectrum).stem, ("lights", n)))
+        else:
+            named.append((light, ("lights", n)))
+    found: dict[str, Light] = {}
+    for name, path in named or [(USUAL_LIGHT, ())]:
         try:
-            found.append(light_name(light))
+            own = name if name in given else light_name(name)
         except ValueError as error:
-            raise _wrong(written, path, shown(light), str(error).partition("; ")[2]) from None
-    return tuple(dict.fromkeys(found))
+            raise _wrong(written, path, shown(name), str(error).partition("; ")[2]) from None
+        found[own] = given.get(own, own)
+    return tuple(found), found
 
 
-def _wanted_shade(written: WrittenRecipe, light: str, observer: int
+def _given_light(written: WrittenRecipe, said: SpectrumReference, n: int) -> Light:
+    """A light by the spectrum of its power; InputError where it does not reach over the visible."""
+    path: FieldPath = ("lights", n, "spectrum")
+    spectrum = read_spectrum(written.folder / said.spectrum, column=said.column, quantity="relative_power")
+    try:
+        return table((spectrum.wavelength_nm, spectrum.values))
+    except ValueError as error:
+        found, _, expected = str(error).partition("; expected ")
+        raise _wrong(written, path, f"{found} ({said.spectrum})", expected) from None
+
+
+def _wanted_shade(written: WrittenRecipe, light: Light, observer: int
                   ) -> tuple[tuple[float, float, float] | None, np.ndarray | None, list[str]]:
     """CIELAB of the wanted shade, the spectrum it comes from, and what to say of that."""
     wanted = written.recipe.wanted

@@ -25,6 +25,7 @@ from formcheck.colour.cielab import lab, lch
 from formcheck.colour.difference import delta_e_2000, difference_words
 from formcheck.colour.grounds import ground, ground_record
 from formcheck.colour.hiding import contrast_ratio
+from formcheck.colour.lights import Light
 from formcheck.colour.srgb import hex_code, srgb
 from formcheck.colour.tristimulus import white_point, xyz
 from formcheck.colour.uncertainty import difference_spread, probability_within, propagate
@@ -72,7 +73,7 @@ def why_not(batch: Batch, film: FilmState, viewing: Viewing, known: Colourants, 
 
 def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts: Parts, batch: Batch, r: int) -> Shade:
     assert viewing.setting is not None
-    setting, light, observer = viewing.setting, viewing.lights[0], viewing.observer_deg
+    setting, observer, light = viewing.setting, viewing.observer_deg, viewing.light(viewing.lights[0])
     x = model.inputs
 
     def labs(rows: np.ndarray) -> np.ndarray:
@@ -90,7 +91,7 @@ def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts:
     low, high = np.percentile(drawn_spectra, [15.9, 84.1], axis=0)
     wanted, de00, de00_sd, within, words = _against_wanted(viewing, moved.value, covariance)
     return Shade(
-        light=light, observer_deg=observer, swatch=swatch_of(moved.value, light, observer),
+        light=viewing.lights[0], observer_deg=observer, swatch=swatch_of(moved.value, light, observer),
         xyz=_triple(xyz(value, light, observer)), lch=_triple(lch(moved.value)),
         lab_sd=_triple(np.sqrt(np.diag(covariance))),
         spectrum=Spectrum(
@@ -106,11 +107,11 @@ def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts:
         basis=basis_with_shares(known, form_share, parts), left_out=left_out(model, viewing, known, parts, batch, r))
 
 
-def swatch_of(shade, light: str, observer: int) -> Swatch:
+def swatch_of(shade, light: Light, observer: int) -> Swatch:
     return swatches_of(np.asarray(shade, float)[None, :], light, observer)[0]
 
 
-def swatches_of(shades: np.ndarray, light: str, observer: int) -> list[Swatch]:
+def swatches_of(shades: np.ndarray, light: Light, observer: int) -> list[Swatch]:
     """Swatches of many shades (N, 3) under one light."""
     rgb, inside = srgb(shades, light, observer)
     return [Swatch(lab=_triple(shade), srgb_hex=hex_code(one), in_gamut=bool(fits))
@@ -125,11 +126,11 @@ def _against_wanted(viewing: Viewing, shade: np.ndarray, covariance: np.ndarray)
     """(Wanted, DE00, its sd, P within tolerance, words); Nones where nothing is wanted."""
     if viewing.wanted_lab is None:
         return None, None, None, None, ""
-    light, observer, target = viewing.lights[0], viewing.observer_deg, np.array(viewing.wanted_lab)
+    name, observer, target = viewing.lights[0], viewing.observer_deg, np.array(viewing.wanted_lab)
     within = None
     if viewing.tolerance is not None:
         within = float(probability_within(shade, covariance, target, viewing.tolerance))
-    wanted = Wanted(swatch=swatch_of(target, light, observer), light=light, observer_deg=observer,
+    wanted = Wanted(swatch=swatch_of(target, viewing.light(name), observer), light=name, observer_deg=observer,
                     tolerance_de00=viewing.tolerance)
     _, spread = difference_spread(shade, covariance, target)
     return wanted, float(delta_e_2000(shade, target)), float(spread), within, difference_words(target, shade)
@@ -137,13 +138,14 @@ def _against_wanted(viewing: Viewing, shade: np.ndarray, covariance: np.ndarray)
 
 def _under_lights(spectrum: np.ndarray, viewing: Viewing) -> list[UnderLight]:
     observer = viewing.observer_deg
-    labs = [lab(xyz(spectrum, light, observer), white_point(light, observer)) for light in viewing.lights]
-    return [UnderLight(light=light, swatch=swatch_of(one, light, observer),
+    lights = [viewing.light(name) for name in viewing.lights]
+    labs = [lab(xyz(spectrum, light, observer), white_point(light, observer)) for light in lights]
+    return [UnderLight(light=name, swatch=swatch_of(one, light, observer),
                        de00_from_first=float(delta_e_2000(labs[0], one)))
-            for light, one in zip(viewing.lights, labs, strict=True)]
+            for name, light, one in zip(viewing.lights, lights, labs, strict=True)]
 
 
-def _region(drawn: np.ndarray, light: str, observer: int) -> list[Swatch]:
+def _region(drawn: np.ndarray, light: Light, observer: int) -> list[Swatch]:
     """Shades along the direction in which the drawn ones spread most, from one end to the other."""
     _, axes = np.linalg.eigh(np.cov(drawn.T))
     order = np.argsort((drawn - drawn.mean(axis=0)) @ axes[:, -1])

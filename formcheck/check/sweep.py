@@ -89,14 +89,14 @@ def sweep_shades(path: Path, *, vary: str | None = None, steps: int = USUAL_STEP
 
 def _looked_at(written: WrittenRecipe, *, lights: Sequence[str] = (), ground: str = "") -> WrittenRecipe:
     """The recipe under other lights or on another ground than it names."""
-    update: dict[str, object] = {"lights": list(lights)} if lights else {}
+    update: dict[str, object] = {"lights": [_by_file(one, written.folder) for one in lights]} if lights else {}
     if ground:
-        update["ground"] = ground if ground in ground_names() else _ground_of_file(ground, written.folder)
+        update["ground"] = ground if ground in ground_names() else _by_file(ground, written.folder)
     return replace(written, recipe=written.recipe.model_copy(update=update)) if update else written
 
 
-def _ground_of_file(name: str, folder: Path) -> SpectrumReference | str:
-    """A ground given on the command line by the file of its reflectance; other words stay names."""
+def _by_file(name: str, folder: Path) -> SpectrumReference | str:
+    """A ground or light given on the command line by the file of its spectrum; other words stay names."""
     return SpectrumReference(spectrum=os.path.relpath(name, folder)) if Path(name).suffix else name
 
 
@@ -175,7 +175,7 @@ def _on_ground(name: str, viewings: Sequence[Viewing], model: Model, batch: Batc
                acids, known, row: Row | None, draws: int) -> list[SweptShade]:
     """All amounts on one ground at once."""
     first = viewings[0]
-    setting, light, observer = first.setting, first.lights[0], first.observer_deg
+    setting, observer, light = first.setting, first.observer_deg, first.light(first.lights[0])
     assert setting is not None
     inputs = [inputs_of(batch, viewing, known, acids[r], film, r) for r, viewing in enumerate(viewings)]
     value, sd, lower = (np.stack([getattr(one, field) for one in inputs]) for field in ("value", "sd", "lower"))
@@ -217,11 +217,12 @@ def _on_ground(name: str, viewings: Sequence[Viewing], model: Model, batch: Batc
 def _under_lights(spectra: np.ndarray, viewing: Viewing) -> list[list[UnderLight]]:
     """For every spectrum, its shade under every light."""
     observer = viewing.observer_deg
-    labs = [lab(xyz(spectra, light, observer), white_point(light, observer)) for light in viewing.lights]
-    swatches = [swatches_of(one, light, observer) for one, light in zip(labs, viewing.lights, strict=True)]
+    lights = [viewing.light(name) for name in viewing.lights]
+    labs = [lab(xyz(spectra, light, observer), white_point(light, observer)) for light in lights]
+    swatches = [swatches_of(one, light, observer) for one, light in zip(labs, lights, strict=True)]
     changes = [delta_e_2000(labs[0], one) for one in labs]
-    return [[UnderLight(light=light, swatch=swatches[n][r], de00_from_first=float(changes[n][r]))
-             for n, light in enumerate(viewing.lights)] for r in range(len(spectra))]
+    return [[UnderLight(light=name, swatch=swatches[n][r], de00_from_first=float(changes[n][r]))
+             for n, name in enumerate(viewing.lights)] for r in range(len(spectra))]
 
 
 def _drawn(labs: np.ndarray, of_model: np.ndarray, seed: int = 21) -> np.ndarray:
@@ -256,4 +257,4 @@ def _against(value: np.ndarray, covariance: np.ndarray, viewing: Viewing) -> lis
 
 
 def _swatch(shade, viewing: Viewing) -> Swatch:
-    return swatches_of(np.array([shade]), viewing.lights[0], viewing.observer_deg)[0]
+    return swatches_of(np.array([shade]), viewing.light(viewing.lights[0]), viewing.observer_deg)[0]

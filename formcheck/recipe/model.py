@@ -129,6 +129,10 @@ Ground = Annotated[
     Discriminator(_written_as)]
 
 
+GivenLight = Annotated[Annotated[Name, Tag("name")] | Annotated[SpectrumReference, Tag("mapping")],
+                       Discriminator(_written_as)]
+
+
 class Wanted(Strict):
     """The shade aimed at: `lab`, or a measured `spectrum`, one of the two."""
 
@@ -190,11 +194,14 @@ class Recipe(Strict):
     ground: Ground | None = Field(default=None, description=(
         "What the layer lies on: the name of a built-in ground, or `spectrum: FILE` with its reflectance."))
     wanted: Wanted | None = Field(default=None, description="The shade aimed at.")
-    lights: list[Name] = Field(default=[], max_length=20, description=(
-        "Lights to view it under, such as D65, A; the first is the one figures are given for."))
+    lights: list[GivenLight] = Field(default=[], max_length=20, description=(
+        "Lights to view it under, such as D65, A, or `spectrum: FILE` with the power of one of your own, which "
+        "then goes by the name of its file; the first is the one figures are given for."))
     observer: Observer = Field(default=10, description="CIE observer: 2 (1931) or 10 (1964) degrees.")
     specular: Literal["included", "excluded"] = Field(default="included", description=(
         "Whether the shown reflectance holds the mirror reflection of the surface."))
+    geometry: Literal["d:8", "45:0"] = Field(default="d:8", description=(
+        "How the shown reflectance is measured: d:8 (sphere), or 45:0, which never holds the mirror reflection."))
     measured: Measured | None = Field(default=None, description="What was measured on the mixture.")
     binder_index: Annotated[float, Field(ge=1, le=3)] | None = Field(
         default=None, description="Refractive index of the dry binder. Absent: from the binder's record.")
