@@ -38,6 +38,16 @@ class Optics:
 
 
 @dataclass(frozen=True)
+class Layer:
+    """Another film of the stack as it stands: arrays over the wavelengths of the prediction, and its index."""
+
+    k_x: np.ndarray  # (W,)
+    s_x: np.ndarray
+    dye_absorbance: np.ndarray
+    n: float
+
+
+@dataclass(frozen=True)
 class Setting:
     """Where the mixture is looked at: through a cell, or as a film on a ground."""
 
@@ -50,6 +60,8 @@ class Setting:
     specular_included: bool = True
     directional: bool = False  # 45:0 instead of d:8
     ground_directional: bool = False
+    under: tuple[Layer, ...] = ()  # films between the ground and this one, the lowest first
+    over: tuple[Layer, ...] = ()  # films over this one, the lowest first
 
 
 @dataclass(frozen=True)
@@ -111,7 +123,7 @@ def predict_spectrum(optics: Optics, setting: Setting, variants: Variants) -> np
     k_x = (volume * variants.k_scale) @ optics.k * thickness
     s_x = (volume * variants.s_scale) @ optics.s * thickness
     dye_absorbance = per_cm * thickness / UM_PER_CM
-    if setting.learned_surface or setting.directional:
+    if setting.learned_surface or setting.directional or setting.under or setting.over:
         return _as_stack(setting, k_x, s_x, dye_absorbance)
     return layer_reflectance(
         k_x=k_x,
@@ -126,7 +138,7 @@ def predict_spectrum(optics: Optics, setting: Setting, variants: Variants) -> np
 
 
 def _as_stack(setting: Setting, k_x: np.ndarray, s_x: np.ndarray, dye_absorbance: np.ndarray) -> np.ndarray:
-    """A film seen in 45:0, or under the surface whose constants were learned with its K and S, (N, W)."""
+    """A film among others, in 45:0, or under the surface whose constants were learned with its K and S, (N, W)."""
     from formcheck.colour.geometry import DIRECTIONAL, GLOSS_IN, GLOSS_OUT, surface_of_constants
     from formcheck.colour.layers import stack_reflectance
 
@@ -138,8 +150,16 @@ def _as_stack(setting: Setting, k_x: np.ndarray, s_x: np.ndarray, dye_absorbance
     if setting.learned_surface:
         k1, k2 = setting.learned_surface
         surface = surface_of_constants(k1=k1, k2=k2, specular_included=setting.specular_included)
+    above, below = setting.over[::-1], setting.under[::-1]  # a stack is written from the air down
+
+    def stacked(own: np.ndarray, name: str) -> np.ndarray:
+        films = [*(getattr(one, name) for one in above), own, *(getattr(one, name) for one in below)]
+        return np.stack([np.broadcast_to(one, own.shape) for one in films], axis=1)
+
     return stack_reflectance(
-        ground=setting.ground, k_x=k_x[:, None, :], s_x=s_x[:, None, :], dye_absorbance=dye_absorbance[:, None, :],
-        n=setting.film_index, ground_in_air=setting.ground_in_air, air_surface=surface,
+        ground=setting.ground, k_x=stacked(k_x, "k_x"), s_x=stacked(s_x, "s_x"),
+        dye_absorbance=stacked(dye_absorbance, "dye_absorbance"),
+        n=np.array([*(one.n for one in above), setting.film_index, *(one.n for one in below)]),
+        ground_in_air=setting.ground_in_air, air_surface=surface,
         geometry=geometry(setting.directional, setting.specular_included),
         ground_geometry=geometry(setting.ground_directional, setting.ground_specular_included))

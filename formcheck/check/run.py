@@ -44,6 +44,10 @@ def check_recipe(written: WrittenRecipe, *, as_of: date, book: Book, shelf_folde
     film = film_state(batch, parts, shelf)
     acid = acid_state(batch, shelf)
     viewing = viewing_of(written, parts, film)
+    if written.recipe.under or written.recipe.over:
+        from formcheck.check.layers import with_layers
+
+        viewing = with_layers(written, viewing, shelf_folder)
     shares = form_shares(parts, ~(parts.fractions(batch.mass_fraction)[0] == 0), acid)
     shade, shade_reason, _ = shade_of(batch, parts, film=film, acid=acid, viewing=viewing, form_share=shares)
     answers = judged(batch, pure, shelf, film=film, acid=acid, book=book, as_of=as_of)

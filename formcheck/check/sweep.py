@@ -14,6 +14,7 @@ from formcheck import __version__
 from formcheck.check.acid import acid_state, form_shares
 from formcheck.check.colorimetry import differences, hiding_of, match_of, munsell_of
 from formcheck.check.colourants import colourants_of, model_error
+from formcheck.check.layers import with_layers
 from formcheck.check.model_error import model_error_covariance
 from formcheck.check.parts import Parts, parts_of
 from formcheck.check.prediction_model import Model, draws_of, inputs_of, prediction_model
@@ -84,7 +85,7 @@ def sweep_shades(path: Path, *, vary: str | None = None, steps: int = USUAL_STEP
     shelf = batch.shelves[0]
     parts = parts_of(shelf, batch.materials)
     film = film_state(batch, parts, shelf)
-    return _swept(written, batch, parts, film, row, grounds or [""], draws)
+    return _swept(written, batch, parts, film, row, grounds or [""], draws, shelf_folder)
 
 
 def _looked_at(written: WrittenRecipe, *, lights: Sequence[str] = (), ground: str = "") -> WrittenRecipe:
@@ -134,7 +135,7 @@ def _row_of(name: str, line: int, first: str, last: str):
 
 
 def _swept(written: WrittenRecipe, batch: Batch, parts: Parts, film: FilmState, row: Row | None,
-           grounds: Sequence[str], draws: int) -> ShadeSweep:
+           grounds: Sequence[str], draws: int, shelf_folder: Path | None) -> ShadeSweep:
     n = len(batch.mass_fraction)
     acids = [acid_state(batch, batch.shelves[0], r) for r in range(n)]
     present = (parts.fractions(batch.mass_fraction) != 0).any(axis=0)
@@ -142,7 +143,7 @@ def _swept(written: WrittenRecipe, batch: Batch, parts: Parts, film: FilmState, 
     seen: dict[str, list[Viewing]] = {}
     for name in grounds:
         one = _looked_at(written, ground=name)
-        viewings = [viewing_of(one, parts, film, r) for r in range(n)]
+        viewings = [with_layers(one, viewing_of(one, parts, film, r), shelf_folder) for r in range(n)]
         for r, viewing in enumerate(viewings):
             share = form_shares(parts, present, acids[r])
             reason = why_not(batch, film, viewing, known, share, parts.fractions(batch.mass_fraction)[r], r)
@@ -200,7 +201,7 @@ def _on_ground(name: str, viewings: Sequence[Viewing], model: Model, batch: Batc
         told.update(_counted(one, first))
     swatches = swatches_of(moved.value, light, observer)
     hiding: list[Hiding] | list[None] = [None] * len(value)
-    if setting.ground is not None and not setting.learned_surface:
+    if setting.ground is not None and not (setting.learned_surface or setting.under or setting.over):
         hiding = hiding_of(model.optics, setting, model.variants(value), float(film.solids_volume.value[0]))
     wanted = None if first.wanted_lab is None else np.array(first.wanted_lab)
     return [SweptShade(

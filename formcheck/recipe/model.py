@@ -189,6 +189,10 @@ class Recipe(Strict):
     batch: BatchText | None = Field(default=None, description=(
         "How much is made, by mass or volume. Left out where the amounts tell it or all are relative."))
     film: Film | None = Field(default=None, description="Thickness of the layer.")
+    under: list[FilePath] = Field(default=[], max_length=8, description=(
+        "Recipe files of the films that lie between the ground and this one, such as a primer; first applied first."))
+    over: list[FilePath] = Field(default=[], max_length=8, description=(
+        "Recipe files of the films put over this one, such as a varnish; first applied first."))
     path_length: LengthText | None = Field(default=None, description=(
         "Path of the light through a solution, such as '10 mm'."))
     ground: Ground | None = Field(default=None, description=(
