@@ -24,6 +24,7 @@ Files = Annotated[list[Path], typer.Argument(help="Recipe files: YAML, CSV or .x
 AsOf = Annotated[str | None, typer.Option("--as-of", metavar="DATE", help="Use the rules in force on this day.")]
 ShelfFolder = Annotated[Path | None, typer.Option("--shelf", help="A folder of your own material records.")]
 RuleFolders = Annotated[list[Path] | None, typer.Option("--rules", help="A folder of further rules.")]
+Lights = Annotated[list[str] | None, typer.Option("--light", help="A light, or a file of its power; again for each.")]
 Json = Annotated[bool, typer.Option("--json", help="Print the whole record as JSON.")]
 Page = Annotated[Path | None, typer.Option("--page", metavar="FILE", help="Write one self-contained page.")]
 
@@ -68,8 +69,10 @@ def shade(
     steps: Annotated[int, typer.Option("--steps", help="How many amounts.")] = 11,
     ground: Annotated[list[str] | None, typer.Option(
         "--ground", help="A built-in ground, or a file of reflectance; again for each.")] = None,
-    light: Annotated[list[str] | None, typer.Option("--light", help="A light; again for each.")] = None,
+    light: Lights = None,
     draws: Annotated[int, typer.Option("--draws", help="Uncertainty by so many draws.")] = 0,
+    spectra: Annotated[Path | None, typer.Option(
+        "--spectra", metavar="FILE", help="Write the predicted spectra as CSV or CxF3, by the name.")] = None,
     shelf: ShelfFolder = None, json: Json = False, page: Page = None,
 ) -> None:
     """The shade alone, as written or along a row of amounts, on several grounds and under several lights."""
@@ -88,6 +91,44 @@ def shade(
         from formcheck.report.sweep_page import sweep_html
 
         write_text(page, sweep_html(record))
+        _say(f"wrote {page}")
+    if spectra:
+        from formcheck.check.sweep import write_swept_spectra
+
+        write_swept_spectra(record, spectra, day=date.today())
+        _say(f"wrote {spectra}")
+
+
+@app.command()
+def compare(
+    standard: Annotated[Path, typer.Argument(help="Spectrum file of the standard.", show_default=False)],
+    sample: Annotated[Path, typer.Argument(help="Spectrum file of the sample.", show_default=False)],
+    white: Annotated[Path | None, typer.Option("--white", help="The bare reduction: strengths too.")] = None,
+    light: Lights = None,
+    observer: Annotated[int, typer.Option("--observer", help="2 or 10 degrees.")] = 10,
+    of_standard: Annotated[str | None, typer.Option("--of-standard", help="Its column or sample, of several.")] = None,
+    of_sample: Annotated[str | None, typer.Option("--of-sample", help="Its column or sample, of several.")] = None,
+    scale: Annotated[str | None, typer.Option("--scale", help="percent or fraction, if no file says.")] = None,
+    json: Json = False, page: Page = None,
+) -> None:
+    """Two measured spectra against each other: differences in words, metamerism, match, strength."""
+    from formcheck.check.compare import compare_spectra
+
+    if scale not in (None, "percent", "fraction"):
+        raise trouble("--scale", repr(scale), "percent or fraction")
+    record = compare_spectra(standard, sample, white=white, lights=light or [], observer_deg=observer,
+                             columns=(of_standard, of_sample), scale=scale)  # type: ignore[arg-type]
+    if json:
+        _print_utf_8(record.model_dump_json(indent=1))
+    else:
+        from formcheck.report.compare import show_comparison
+
+        show_comparison(record)
+    if page:
+        from formcheck.files_out import write_text
+        from formcheck.report.compare import comparison_html
+
+        write_text(page, comparison_html(record))
         _say(f"wrote {page}")
 
 

@@ -6,6 +6,7 @@ import os
 import re
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from datetime import date
 from pathlib import Path
 
 import numpy as np
@@ -40,6 +41,9 @@ from formcheck.recipe.batch import Batch, Varied, build_batch, with_amounts
 from formcheck.recipe.model import SpectrumReference
 from formcheck.recipe.read import WrittenRecipe, read_recipe
 from formcheck.spectra.grid import WAVELENGTH_NM
+from formcheck.spectra.measured import MeasuredSpectrum
+from formcheck.spectra.write_csv import write_spectra_csv
+from formcheck.spectra.write_cxf import write_spectra_cxf
 from formcheck.trouble import suggestion, trouble
 from formcheck.units import UNITS, UnitKind, known_units, parse_amount
 
@@ -259,3 +263,25 @@ def _against(value: np.ndarray, covariance: np.ndarray, viewing: Viewing) -> lis
 
 def _swatch(shade, viewing: Viewing) -> Swatch:
     return swatches_of(np.array([shade]), viewing.light(viewing.lights[0]), viewing.observer_deg)[0]
+
+
+def write_swept_spectra(sweep: ShadeSweep, path: Path, *, day: date) -> None:
+    """Write the predicted spectra to a file, CxF3 where its name ends in .cxf, else CSV.
+
+    Raises
+    ------
+    InputError
+        a place that cannot be written to.
+    """
+    spectra = [MeasuredSpectrum(
+        _spectrum_name(sweep, one), np.array(sweep.wavelength_nm), np.array(one.value), sweep.quantity,
+        instrument=f"predicted by formcheck {sweep.formcheck_version}") for one in sweep.shades]
+    if path.suffix.lower() == ".cxf":
+        write_spectra_cxf(path, spectra, created=day, description=f"{sweep.title}, predicted")
+    else:
+        write_spectra_csv(path, spectra)
+
+
+def _spectrum_name(sweep: ShadeSweep, one: SweptShade) -> str:
+    amount = f"{one.amount:g} {sweep.unit}" if one.amount is not None else "as written"
+    return f"{sweep.title}, {amount}" + (f", {one.ground}" if len(sweep.grounds) > 1 else "")
