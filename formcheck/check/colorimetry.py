@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 import numpy as np
 
 from formcheck.check.predict import Optics, Setting, Variants, dye_absorbance_per_cm, pigment_volume_fraction
@@ -14,8 +16,10 @@ from formcheck.colour.hiding import COMPLETE_HIDING, thickness_for_contrast
 from formcheck.colour.metamerism import metamerism_index
 from formcheck.colour.munsell import hue_value_chroma_of_spectrum, notation
 from formcheck.colour.spectral_match import goodness_of_fit, match_word, rms_difference
+from formcheck.colour.transparency import transparency_of_film
 
 UM_PER_CM = 1e4
+TRANSPARENCY_OVER = (0.0, 0.25, 0.5, 0.75, 1.0)  # of the film: from the bare black on, as the growth levels off
 
 
 def differences(wanted: np.ndarray, shade: np.ndarray) -> list[Difference]:
@@ -47,26 +51,34 @@ def munsell_of(spectrum: np.ndarray) -> str:
     return notation(hue_value_chroma_of_spectrum(spectrum)) or ""
 
 
-def hiding_of(optics: Optics, setting: Setting, variants: Variants, solids_by_volume: float) -> list[Hiding]:
-    """Film and spreading rate at a contrast ratio of 0.98 over the charts, for every variant.
+def hiding_of(optics: Optics, setting: Setting, variants: Variants, solids_by_volume: float, *,
+              is_ink: bool) -> list[Hiding]:
+    """Film and spreading rate at a contrast ratio of 0.98 over the charts, and of inks the transparency.
 
-    K, S and the dyes per um of wet film, so that the thickness found is the wet one.
+    One for every variant. K, S and the dyes per um of wet film, so that the thickness found is the wet one.
     """
     volume = pigment_volume_fraction(optics, variants)
     black, white = (ground_record(name) for name in ("chart_black", "chart_white"))
-    wet = thickness_for_contrast(
-        k=(volume * variants.k_scale) @ optics.k, s=(volume * variants.s_scale) @ optics.s,
-        dye_absorbance_per_um=dye_absorbance_per_cm(optics, variants) / UM_PER_CM,
-        black=ground(black.name), white=ground(white.name), n=setting.film_index,
-        specular_included=setting.specular_included, ground_in_air=black.measured_in_air,
-        ground_specular_included=black.specular_included)
-    return [_hiding(float(um), solids_by_volume) for um in wet]
+    film: dict[str, Any] = {"k": (volume * variants.k_scale) @ optics.k, "s": (volume * variants.s_scale) @ optics.s,
+            "dye_absorbance_per_um": dye_absorbance_per_cm(optics, variants) / UM_PER_CM}
+    seen: dict[str, Any] = {"n": setting.film_index, "specular_included": setting.specular_included,
+            "ground_in_air": black.measured_in_air, "ground_specular_included": black.specular_included}
+    wet = thickness_for_contrast(**film, black=ground(black.name), white=ground(white.name), **seen)
+    clear = np.full(len(wet), np.inf)
+    if is_ink:
+        over = float(variants.wet_thickness_um[0]) * np.array(TRANSPARENCY_OVER)
+        clear = transparency_of_film(**film, thickness_um=over, black=ground(black.name), **seen)
+    return [_hiding(float(um), float(number), solids_by_volume) for um, number in zip(wet, clear, strict=True)]
 
 
-def _hiding(wet_um: float, solids_by_volume: float) -> Hiding:
+def _hiding(wet_um: float, transparency_um: float, solids_by_volume: float) -> Hiding:
+    transparency = transparency_um if np.isfinite(transparency_um) else None
     if not np.isfinite(wet_um):
-        return Hiding(contrast=COMPLETE_HIDING, reason="no film of it hides: it scatters too little")
+        return Hiding(contrast=COMPLETE_HIDING, transparency_um=transparency,
+                      reason="no film of it hides: it scatters too little")
     if wet_um <= 0:
-        return Hiding(contrast=COMPLETE_HIDING, reason="the bare charts already reach it")
+        return Hiding(contrast=COMPLETE_HIDING, transparency_um=transparency,
+                      reason="the bare charts already reach it")
     dry = wet_um * solids_by_volume if np.isfinite(solids_by_volume) else None
-    return Hiding(contrast=COMPLETE_HIDING, wet_um=wet_um, dry_um=dry, spreading_m2_l=1000.0 / wet_um)
+    return Hiding(contrast=COMPLETE_HIDING, wet_um=wet_um, dry_um=dry, spreading_m2_l=1000.0 / wet_um,
+                  transparency_um=transparency)

@@ -11,7 +11,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from formcheck.colour.beer_lambert import transmittance
-from formcheck.colour.layer import layer_reflectance
+from formcheck.colour.layer import k_over_s_of_dye, layer_reflectance, stained_ground
 
 UM_PER_CM = 1e4
 
@@ -60,6 +60,7 @@ class Setting:
     specular_included: bool = True
     directional: bool = False  # 45:0 instead of d:8
     ground_directional: bool = False
+    takes_in: tuple[float, float] | None = None  # depth in um and S per um of a ground that the dye goes into
     under: tuple[Layer, ...] = ()  # films between the ground and this one, the lowest first
     over: tuple[Layer, ...] = ()  # films over this one, the lowest first
 
@@ -123,6 +124,10 @@ def predict_spectrum(optics: Optics, setting: Setting, variants: Variants) -> np
     k_x = (volume * variants.k_scale) @ optics.k * thickness
     s_x = (volume * variants.s_scale) @ optics.s * thickness
     dye_absorbance = per_cm * thickness / UM_PER_CM
+    if setting.takes_in:
+        depth_um, scattering_per_um = setting.takes_in
+        extra = k_over_s_of_dye(dye_absorbance / depth_um, ground_scattering_per_um=scattering_per_um)
+        return stained_ground(setting.ground, extra_k_over_s=extra, specular_included=setting.specular_included)
     if setting.learned_surface or setting.directional or setting.under or setting.over:
         return _as_stack(setting, k_x, s_x, dye_absorbance)
     return layer_reflectance(

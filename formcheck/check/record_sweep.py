@@ -46,6 +46,7 @@ class Hiding(Part):
     wet_um: float | None = None
     dry_um: float | None = None
     spreading_m2_l: float | None = None
+    transparency_um: float | None = None  # wet film for one unit of ΔE*ab over black, of inks; None where none shows
     reason: str = ""
 
 

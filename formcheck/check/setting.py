@@ -15,7 +15,7 @@ from formcheck.colour.grounds import ground, ground_names, ground_record
 from formcheck.colour.lights import Light, light_name, table
 from formcheck.colour.tristimulus import white_point, xyz
 from formcheck.documents import FieldPath, path_text
-from formcheck.recipe.model import SpectrumReference, Wanted
+from formcheck.recipe.model import GroundReference, SpectrumReference, Wanted
 from formcheck.recipe.read import WrittenRecipe
 from formcheck.spectra.files import MeasuredSpectrum, read_spectrum
 from formcheck.spectra.grid import resample
@@ -85,9 +85,14 @@ def viewing_of(written: WrittenRecipe, parts: Parts, film: FilmState, r: int = 0
     in_air_gloss = gloss if with_gloss is None else with_gloss
     directional = recipe.geometry == "45:0"
     sd = (recipe.film.sd_um or 0.0) * wet / recipe.film.thickness_um
+    takes_in = recipe.ground.takes_in if isinstance(recipe.ground, GroundReference) else None
     setting = Setting(ground=values, ground_in_air=in_air, ground_specular_included=in_air_gloss,
+                      takes_in=(takes_in.depth_um, takes_in.scattering_per_um) if takes_in else None,
                       film_index=index, specular_included=gloss and not directional, directional=directional,
                       ground_directional=directional and with_gloss is None)
+    if takes_in:
+        return seen(setting, wet=wet, sd=sd, ground_name=name, notes=notes,
+                    geometry=f"{wet:.3g} um laid on and taken in by {name} to {takes_in.depth}")
     return seen(setting, wet=wet, sd=sd, ground_name=name, notes=notes,
                 geometry=f"film of {wet:.3g} um wet over {name}, "
                          + ("45:0" if directional else f"d:8, mirror reflection {recipe.specular}"))

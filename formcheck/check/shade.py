@@ -68,6 +68,8 @@ def why_not(batch: Batch, film: FilmState, viewing: Viewing, known: Colourants, 
         reasons.append(f"the density of the mixture is unknown: {film.density_g_ml.reasons[r]}")
     if known.pigments and viewing.setting and viewing.setting.path_length_cm is not None:
         reasons.append("a pigment makes the liquid turbid, which a clear cell does not hold")
+    if known.pigments and viewing.setting and viewing.setting.takes_in:
+        reasons.append("a pigment stays on a ground that takes the dye in, which the model does not hold")
     return "; ".join(dict.fromkeys(reasons))
 
 
@@ -89,6 +91,8 @@ def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts:
     covariance = (np.cov(drawn.T) if estimated else moved.covariance) + of_model
     value = model.spectra(x.value[None, :], setting)[0]
     low, high = np.percentile(drawn_spectra, [15.9, 84.1], axis=0)
+    is_film = setting.ground is not None and not setting.takes_in
+    contrast = contrast_ratios(model, viewing, x.value[None, :])[0] if is_film else None
     wanted, de00, de00_sd, within, words = _against_wanted(viewing, moved.value, covariance)
     return Shade(
         light=viewing.lights[0], observer_deg=observer, swatch=swatch_of(moved.value, light, observer),
@@ -101,7 +105,7 @@ def _shade(model: Model, viewing: Viewing, known: Colourants, form_share, parts:
         ground=viewing.ground_name, geometry=viewing.geometry, wanted=wanted, de00=de00, de00_sd=de00_sd,
         probability_within=within, difference_words=words,
         lights=_under_lights(value, viewing), region=_region(drawn, light, observer),
-        contrast_ratio=contrast_ratios(model, viewing, x.value[None, :])[0] if setting.ground is not None else None,
+        contrast_ratio=contrast,
         dominated_by=dominant(moved.share_total, x.label, np.trace(moved.covariance),
                               (f"model of {whose}", float(np.trace(of_model)))),
         basis=basis_with_shares(known, form_share, parts), left_out=left_out(model, viewing, known, parts, batch, r))

@@ -191,7 +191,8 @@ def _on_ground(name: str, viewings: Sequence[Viewing], model: Model, batch: Batc
     moved = propagate(labs, value, sd, lower=lower)
     spectra = model.spectra(value, setting)
     under = _under_lights(spectra, first)
-    contrast = contrast_ratios(model, first, value) if setting.ground is not None else [None] * len(value)
+    is_film = setting.ground is not None and not setting.takes_in
+    contrast = contrast_ratios(model, first, value) if is_film else [None] * len(value)
     error, whose = model_error(known)
     of_model = np.array([model_error_covariance(one, error) if error else np.zeros((3, 3)) for one in moved.value])
     covariance = moved.covariance + of_model
@@ -205,8 +206,10 @@ def _on_ground(name: str, viewings: Sequence[Viewing], model: Model, batch: Batc
         told.update(_counted(one, first))
     swatches = swatches_of(moved.value, light, observer)
     hiding: list[Hiding] | list[None] = [None] * len(value)
-    if setting.ground is not None and not (setting.learned_surface or setting.under or setting.over):
-        hiding = hiding_of(model.optics, setting, model.variants(value), float(film.solids_volume.value[0]))
+    if setting.ground is not None and not (
+            setting.learned_surface or setting.under or setting.over or setting.takes_in):
+        hiding = hiding_of(model.optics, setting, model.variants(value), float(film.solids_volume.value[0]),
+                           is_ink=batch.recipes[0].recipe.what == "ink")
     wanted = None if first.wanted_lab is None else np.array(first.wanted_lab)
     return [SweptShade(
         amount=float(row.amounts[r]) if row else None, ground=name, swatch=swatches[r],

@@ -119,13 +119,32 @@ class SpectrumReference(Strict):
         "Whether the file holds percent or a fraction of 1, where it does not say itself."))
 
 
+class TakesIn(Strict):
+    """A ground that a dye goes into, such as wood or textile, instead of lying on it."""
+
+    depth: LengthText = Field(description="How deep the dye goes, such as '80 um'.")
+    scattering_per_um: Annotated[float, Field(gt=0, le=10)] = Field(description=(
+        "Kubelka-Munk S of the ground, per um, learnt from dyeings of known depth."))
+
+    @property
+    def depth_um(self) -> float:
+        return length_um(self.depth)
+
+
+class GroundReference(SpectrumReference):
+    """The measured ground, and whether it takes the dye in."""
+
+    takes_in: TakesIn | None = Field(default=None, description=(
+        "For wood, paper and textile: the dye goes into the ground. Absent: it lies on it as a film."))
+
+
 def _written_as(value: Any) -> str:
     return "mapping" if isinstance(value, dict | SpectrumReference) else "name"
 
 
 Ground = Annotated[
     Annotated[str, Field(min_length=1, max_length=200), Tag("name")]
-    | Annotated[SpectrumReference, Tag("mapping")],
+    | Annotated[GroundReference, Tag("mapping")],
     Discriminator(_written_as)]
 
 

@@ -35,7 +35,7 @@ FIELDS: dict[str, str] = {
     "ground.scale": "word", "wanted.scale": "word",
     "wanted.lab": "numbers", "wanted.spectrum": "text", "wanted.column": "text", "wanted.light": "text",
     "wanted.observer": "number", "wanted.tolerance": "number",
-    "lights": "texts", "observer": "number", "specular": "word", "geometry": "word",
+    "lights": "texts", "under": "texts", "over": "texts", "observer": "number", "specular": "word", "geometry": "word",
     "measured.ph": "number", "measured.ph_sd": "number", "measured.density_g_cm3": "number",
     "measured.temperature_c": "number", "binder_index": "number", "weighing": "amount", "acts": "words",
     "shelf": "text",

@@ -117,6 +117,9 @@ def detail_rows(one: SweptShade) -> list[tuple[str, str]]:
         rows += [("metamerism", f"{index.light}: ΔE00 {plain(index.index_de00)}") for index in one.match.metamerism]
     if one.hiding:
         rows.append(("hiding", hiding_text(one.hiding)))
+        if one.hiding.transparency_um is not None:
+            clear = plain(one.hiding.transparency_um)
+            rows.append(("transparency", f"{clear} µm of wet film for one ΔE*ab over black"))
     return rows
 
 
