@@ -88,7 +88,7 @@ def film_bounds(facts: MixtureFacts) -> Bounds:
 def _of_film(lower: np.ndarray, upper: np.ndarray, film: Bounds, *, most: float) -> Bounds:
     """What is counted stays in the film, whole: (R, rows) over (R,). Never more than all of the film."""
     least_film, most_film = film[0][:, None], film[1][:, None]
-    with np.errstate(divide="ignore", invalid="ignore"):
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
         low = np.where(lower > 0, lower / most_film, 0.0)
         high = np.where(upper > 0, upper / least_film, 0.0)
     return np.minimum(low, most), np.minimum(high, most)
