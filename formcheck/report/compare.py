@@ -11,7 +11,7 @@ from formcheck.report.numbers import plain
 from formcheck.report.plot import Axis, Series, line_plot, visible_spectrum
 from formcheck.report.shade_words import lab_text, observer_text
 from formcheck.report.sheet import at_both_widths, document
-from formcheck.report.swatches import chip, pair
+from formcheck.report.swatches import chip, curve_hex, pair
 from formcheck.report.terminal_parts import heading, labelled, paragraph, speaking, strip
 from formcheck.report.words import clean, hex_colour, one_line
 
@@ -101,11 +101,11 @@ def _light(under: UnderOneLight, comparison: Comparison, *, id: str) -> Markup:
 
 def _spectra(comparison: Comparison) -> Markup:
     first = comparison.lights[0]
-    series = [Series(one.wavelength_nm, one.value, label=name, hex=hex_colour(swatch)) for name, one, swatch in (
+    series = [Series(one.wavelength_nm, one.value, label=name, hex=curve_hex(swatch)) for name, one, swatch in (
         ("standard", comparison.standard, first.standard), ("sample", comparison.sample, first.sample))]
     plotted = at_both_widths(lambda width, height, end: line_plot(
         series, id=f"plot-{end}", title="Spectra of standard and sample",
         description=f"Root mean square difference {plain(comparison.match.rms)}.",
         x=Axis("wavelength, nm", 380.0, 730.0), y=Axis(comparison.standard.quantity, low=0.0),
         strip=visible_spectrum(), width=width, height=height))
-    return tag("figure", plotted, tag("figcaption", "Each in its own colour."))
+    return tag("figure", plotted, tag("figcaption", "Each in its own colour where that shows."))

@@ -13,6 +13,7 @@ from formcheck.report.html import Markup, tag
 from formcheck.report.shade_words import lab_text
 from formcheck.report.words import hex_colour
 
+SHOWS_FROM, SHOWS_TO = 30, 70  # L* of a line that stands out from both pages
 PAIR_WIDTH, PAIR_HEIGHT, REGION_HEIGHT = 320, 220, 48
 
 
@@ -26,6 +27,11 @@ class Chip:
 
 def chip(swatch: Swatch, label: str) -> Chip:
     return Chip(hex_colour(swatch), f"{label}: {hex_colour(swatch) or 'no colour'}, {lab_text(swatch.lab)}")
+
+
+def curve_hex(swatch: Swatch) -> str | None:
+    """The colour to draw a curve in, or None where it would not show on a light or a dark page."""
+    return hex_colour(swatch) if SHOWS_FROM <= swatch.lab[0] <= SHOWS_TO else None
 
 
 def pair(predicted: Chip, wanted: Chip | None, region: Sequence[Chip] = (), *, id: str) -> Markup:

@@ -7,9 +7,9 @@ from formcheck.report.html import Column, Markup, definitions, section, table, t
 from formcheck.report.numbers import plain
 from formcheck.report.plot import Axis, Series, line_plot, visible_spectrum
 from formcheck.report.sheet import at_both_widths, document
-from formcheck.report.swatches import chip, chips
+from formcheck.report.swatches import chip, chips, curve_hex
 from formcheck.report.sweep import cells_of, columns_of, detail_rows, head_rows, hiding_text
-from formcheck.report.words import hex_colour, one_line
+from formcheck.report.words import one_line
 
 COORDINATES = ("L*", "a*", "b*")
 
@@ -79,14 +79,15 @@ def _coordinates(sweep: ShadeSweep, shades: list[SweptShade], *, id: str) -> Mar
 
 def _spectra(sweep: ShadeSweep, shades: list[SweptShade], *, id: str) -> Markup:
     """Every spectrum of the row, drawn in its own colour."""
-    series = [Series(sweep.wavelength_nm, one.value, label=_label(sweep, one), hex=hex_colour(one.swatch))
+    series = [Series(sweep.wavelength_nm, one.value, label=_label(sweep, one), hex=curve_hex(one.swatch))
               for one in shades]
     words = f"{len(shades)} spectra from {plain(sweep.wavelength_nm[0])} to {plain(sweep.wavelength_nm[-1])} nm."
     plotted = at_both_widths(lambda width, height, end: line_plot(
         series, id=f"{id}-spectra-{end}", title=f"Predicted {sweep.quantity}", description=words,
         x=Axis("wavelength, nm", 380.0, 730.0), y=Axis(sweep.quantity, low=0.0), strip=visible_spectrum(),
         width=width, height=height))
-    return tag("figure", plotted, tag("figcaption", f"Predicted {sweep.quantity}, in the colour of each."))
+    caption = f"Predicted {sweep.quantity}, in the colour of each where that shows."
+    return tag("figure", plotted, tag("figcaption", caption))
 
 
 def _list(title: str, lines: list[str], *, id: str) -> Markup | None:
