@@ -6,7 +6,7 @@ from rich.console import Console
 from rich.text import Text
 
 from formcheck.check.record_compare import Comparison, UnderOneLight
-from formcheck.report.html import Markup, definitions, section, tag
+from formcheck.report.html import Column, Markup, definitions, section, table, tag
 from formcheck.report.numbers import plain
 from formcheck.report.plot import Axis, Series, line_plot, visible_spectrum
 from formcheck.report.shade_words import lab_text, observer_text
@@ -16,6 +16,8 @@ from formcheck.report.terminal_parts import heading, labelled, paragraph, speaki
 from formcheck.report.words import clean, hex_colour, one_line
 
 BLOCK_WIDTH, BLOCK_HEIGHT = 40, 3
+DIFFERENCE_COLUMNS: list[Column] = ["formula", *((name, "number") for name in ("in all", "lightness", "chroma", "hue")),
+                                    "in words"]
 
 
 def show_comparison(comparison: Comparison, console: Console | None = None) -> None:
@@ -96,7 +98,10 @@ def comparison_html(comparison: Comparison) -> str:
 def _light(under: UnderOneLight, comparison: Comparison, *, id: str) -> Markup:
     drawn = tag("figure", pair(chip(under.standard, "standard"), chip(under.sample, "sample"), id=f"{id}-pair"),
                 tag("figcaption", "Standard on the left, sample on the right. A screen only resembles them."))
-    return section(2, f"Under {one_line(under.light)}", drawn, definitions(light_rows(under)), id=id)
+    rows = [[one.formula, *(plain(part) for part in (one.value, one.lightness, one.chroma, one.hue)),
+             one_line(one.words)] for one in under.differences]
+    apart = table(f"Differences under {one_line(under.light)}", DIFFERENCE_COLUMNS, rows)
+    return section(2, f"Under {one_line(under.light)}", drawn, definitions(light_rows(under)[:2]), apart, id=id)
 
 
 def _spectra(comparison: Comparison) -> Markup:

@@ -13,14 +13,34 @@ from pathlib import Path
 
 import pytest
 
+from formcheck.check.compare import compare_spectra
+from formcheck.check.sweep import sweep_shades
+from formcheck.report.compare import comparison_html
 from formcheck.report.estimate import estimate_html
 from formcheck.report.page import page_html, pages_html
+from formcheck.report.sweep_page import sweep_html
 from tests.report.sample_check import bare_check, hostile_check, sample_check
 from tests.report.sample_estimate import sample_estimate
 
 pytestmark = pytest.mark.browser
 
+DEMO = Path(__file__).resolve().parents[2] / "demo_formulations"
+
+
+def sweep_page(**asked) -> str:
+    return sweep_html(sweep_shades(DEMO / "harbour_blue_screen_ink.yaml", **asked))
+
+
+def comparison_page() -> str:
+    readings = DEMO / "ladder" / "tidewater_readings.csv"
+    return comparison_html(compare_spectra(
+        readings, readings, columns=("pale tint over white", "middle tint over white"), scale="fraction"))
+
+
 PAGES = {
+    "shade": sweep_page,
+    "sweep": lambda: sweep_page(vary="harbour blue paste=2..12 % w/w", grounds=["chart_white", "chart_black"]),
+    "comparison": comparison_page,
     "check": lambda: page_html(sample_check()),
     "several": lambda: pages_html([sample_check(), bare_check(), hostile_check()]),
     "estimate": lambda: estimate_html(sample_estimate()),
