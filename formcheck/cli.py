@@ -6,6 +6,7 @@ import sys
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from datetime import date
+from importlib import import_module
 from io import TextIOWrapper
 from pathlib import Path
 from typing import Annotated
@@ -80,18 +81,7 @@ def shade(
 
     record = sweep_shades(file, vary=vary, steps=steps, grounds=ground or [], lights=light or [], draws=draws,
                           shelf_folder=shelf)
-    if json:
-        _print_utf_8(record.model_dump_json(indent=1))
-    else:
-        from formcheck.report.sweep import show_sweep
-
-        show_sweep(record)
-    if page:
-        from formcheck.files_out import write_text
-        from formcheck.report.sweep_page import sweep_html
-
-        write_text(page, sweep_html(record))
-        _say(f"wrote {page}")
+    _give(record, json=json, view="sweep.show_sweep", page=page, page_view="sweep_page.sweep_html")
     if spectra:
         from formcheck.check.sweep import write_swept_spectra
 
@@ -118,18 +108,7 @@ def compare(
         raise trouble("--scale", repr(scale), "percent or fraction")
     record = compare_spectra(standard, sample, white=white, lights=light or [], observer_deg=observer,
                              columns=(of_standard, of_sample), scale=scale)  # type: ignore[arg-type]
-    if json:
-        _print_utf_8(record.model_dump_json(indent=1))
-    else:
-        from formcheck.report.compare import show_comparison
-
-        show_comparison(record)
-    if page:
-        from formcheck.files_out import write_text
-        from formcheck.report.compare import comparison_html
-
-        write_text(page, comparison_html(record))
-        _say(f"wrote {page}")
+    _give(record, json=json, view="compare.show_comparison", page=page, page_view="compare.comparison_html")
 
 
 @app.command()
@@ -144,18 +123,7 @@ def estimate(
     from formcheck.check.estimate import estimate_boxes
 
     record = estimate_boxes(box or [], file)
-    if json:
-        _print_utf_8(record.model_dump_json(indent=1))
-    else:
-        from formcheck.report.estimate import show_estimate
-
-        show_estimate(record)
-    if page:
-        from formcheck.files_out import write_text
-        from formcheck.report.estimate import estimate_html
-
-        write_text(page, estimate_html(record))
-        _say(f"wrote {page}")
+    _give(record, json=json, view="estimate.show_estimate", page=page, page_view="estimate.estimate_html")
 
 
 @app.command()
@@ -171,18 +139,7 @@ def learn(
 
     with _progress_bar() as told:
         record = learn_file(file, out=out, shelf_folder=shelf, progress=told)
-    if json:
-        _print_utf_8(record.model_dump_json(indent=1))
-    else:
-        from formcheck.report.learned import show_learned
-
-        show_learned(record)
-    if page:
-        from formcheck.files_out import write_text
-        from formcheck.report.learned_page import learned_html
-
-        write_text(page, learned_html(record))
-        _say(f"wrote {page}")
+    _give(record, json=json, view="learned.show_learned", page=page, page_view="learned_page.learned_html")
 
 
 @app.command()
@@ -279,6 +236,25 @@ def _day(text: str | None) -> date:
         return date.fromisoformat(text)
     except ValueError:
         raise trouble("--as-of", repr(text[:40]), "a date such as 2026-12-01") from None
+
+
+def _give(record, *, json: bool, view: str, page: Path | None, page_view: str) -> None:
+    """Print a record as JSON or by its view, and write its page; views are `module.function` of report/."""
+    if json:
+        _print_utf_8(record.model_dump_json(indent=1))
+    else:
+        _view(view)(record)
+    if page:
+        from formcheck.files_out import write_text
+
+        write_text(page, _view(page_view)(record))
+        _say(f"wrote {page}")
+
+
+def _view(name: str):
+    """A function of report/, imported when it is asked for: the others' rooms stay closed."""
+    module, _, function = name.partition(".")
+    return getattr(import_module(f"formcheck.report.{module}"), function)
 
 
 def _print_json(checks, *, several: bool) -> None:

@@ -94,7 +94,7 @@ class RuleBase(Strict):
         return self
 
     def source_keys(self) -> list[str]:
-        raise NotImplementedError
+        raise AssertionError("every kind of rule names its sources")
 
     def tripped_as(self) -> set[str]:
         """The answers that show the rule tripped."""
